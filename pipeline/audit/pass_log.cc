@@ -1,0 +1,150 @@
+#include "audit/pass_log.h"
+
+#include "absl/strings/str_cat.h"
+#include "absl/strings/str_format.h"
+#include "base/json.h"
+#include "base/status.h"
+
+namespace phraseweld {
+namespace {
+
+constexpr size_t kPiece = size_t{1} << 16;  // bytes handed on at once
+
+void AppendCount(std::string* out, const char* key, uint64_t value) {
+  AppendJsonKey(out, key);
+  absl::StrAppend(out, value);
+}
+
+void AppendText(std::string* out, const char* key, std::string_view text) {
+  AppendJsonKey(out, key);
+  AppendJsonString(out, text);
+}
+
+std::string PassLine(const PassRecord& pass, const ScoreWriter& scores) {
+  std::string out = "{";
+  AppendText(&out, "kind", "pass");
+  AppendCount(&out, "pass", static_cast<uint64_t>(pass.number));
+  AppendText(&out, "name", pass.options.name);
+  AppendCount(&out, "tokens_in", pass.tokens_in);
+  AppendCount(&out, "types_in", pass.types_in);
+  if (pass.number > 0) {
+    AppendCount(&out, "slots", pass.slots);
+    AppendCount(&out, "slot_types", pass.slot_types);
+    AppendText(&out, "rank_by", QuantityName(pass.options.rank_by));
+    AppendJsonKey(&out, "accept");
+    out += '{';
+    for (const Gate& gate : pass.options.accept) {
+      AppendJsonKey(&out, QuantityName(gate.quantity));
+      out += scores.format(gate.least);
+    }
+    out += '}';
+  }
+  out += "}\n";
+  return out;
+}
+
+void AppendSlotLine(std::string* out, const SlotRecord& record, uint64_t rank,
+                    const std::vector<Quantity>& shown, const PassLogContext& context) {
+  const TypeTable& types = *context.types;
+  const SlotTable& table = record.table;
+  *out += '{';
+  AppendText(out, "kind", record.failed ? "near_miss" : "accepted");
+  AppendCount(out, "rank", rank);
+  AppendText(out, "phrase", types.Text(types.SlotWords(record.slot, *context.codes)));
+  AppendText(out, "left", types.Text(record.slot.left));
+  AppendText(out, "bridge", types.Text(context.codes->Words(record.slot.bridge)));
+  AppendText(out, "right", types.Text(record.slot.right));
+  AppendCount(out, "n", table.n);
+  AppendCount(out, "left_slots", table.left);
+  AppendCount(out, "right_slots", table.right);
+  AppendCount(out, "slots", table.total);
+  AppendJsonKey(out, "expected");
+  *out += context.scores.format(context.scores.expected(table));
+  AppendCount(out, "documents", table.documents);
+  AppendJsonKey(out, "scores");
+  *out += '{';
+  for (Quantity quantity : shown) {
+    AppendJsonKey(out, QuantityName(quantity));
+    *out += context.scores.format(context.scores.score(quantity, table));
+  }
+  *out += '}';
+  AppendCount(out, "joined", record.joined);
+  AppendCount(out, "yielded", record.failed ? 0 : table.n - record.joined);
+  const Place& place = context.place_of(record.first);
+  AppendJsonKey(out, "first");
+  *out += '{';
+  AppendText(out, "document", place.document);
+  AppendText(out, "passage", place.passage);
+  AppendCount(out, "byte", place.byte);
+  *out += '}';
+  if (record.failed) AppendText(out, "failed", QuantityName(*record.failed));
+  *out += "}\n";
+}
+
+std::string BalanceLine(const PassRecord& pass) {
+  std::string out = "{";
+  AppendText(&out, "kind", "balance");
+  AppendCount(&out, "pass", static_cast<uint64_t>(pass.number));
+  AppendCount(&out, "tokens_in", pass.tokens_in);
+  AppendCount(&out, "accepted", pass.number == 0 ? pass.ruled.size() : pass.accepted.size());
+  AppendCount(&out, "joined", pass.joined);
+  AppendCount(&out, "words_absorbed", pass.words_absorbed);
+  AppendCount(&out, "tokens_out", pass.tokens_out);
+  out += "}\n";
+  return out;
+}
+
+}  // namespace
+
+std::string PassLogName(int pass) { return absl::StrFormat("pass-%02d.jsonl", pass); }
+
+absl::Status WritePassLog(const PassRecord& pass, const PassLogContext& context,
+                          const std::function<absl::Status(std::string_view)>& append) {
+  std::string out = PassLine(pass, context.scores);
+  for (const RuledRecord& ruled : pass.ruled) {
+    out += '{';
+    AppendText(&out, "kind", "ruled");
+    AppendText(&out, "phrase", ruled.text);
+    AppendCount(&out, "joined", ruled.joined);
+    AppendCount(&out, "documents", ruled.documents);
+    if (!ruled.reason.empty()) AppendText(&out, "reason", ruled.reason);
+    out += "}\n";
+  }
+  const std::vector<Quantity> shown = ShownMeasures(pass.options);
+  for (const auto* list : {&pass.accepted, &pass.near_misses}) {
+    uint64_t rank = 0;
+    for (const SlotRecord& record : *list) {
+      AppendSlotLine(&out, record, ++rank, shown, context);
+      if (out.size() >= kPiece) {
+        PW_RETURN_IF_ERROR(append(out));
+        out.clear();
+      }
+    }
+  }
+  out += BalanceLine(pass);
+  return append(out);
+}
+
+absl::Status CheckBalance(const PassRecord& pass, const BridgeCodes& codes) {
+  uint64_t joined = 0, absorbed = 0;
+  for (const SlotRecord& record : pass.accepted) {
+    if (record.joined > record.table.n) {
+      return absl::InternalError(absl::StrCat("pass ", pass.number, ": ", record.joined,
+                                              " slots joined of a type that has ",
+                                              record.table.n));
+    }
+    joined += record.joined;
+    absorbed += record.joined * static_cast<uint64_t>(1 + codes.Length(record.slot.bridge));
+  }
+  if (pass.number > 0 && (joined != pass.joined || absorbed != pass.words_absorbed)) {
+    return absl::InternalError(absl::StrCat("pass ", pass.number, ": joined ", pass.joined,
+                                            " but the accepted types add up to ", joined));
+  }
+  if (pass.tokens_in - pass.words_absorbed != pass.tokens_out) {
+    return absl::InternalError(absl::StrCat("pass ", pass.number, ": ", pass.tokens_in, " - ",
+                                            pass.words_absorbed, " is not ", pass.tokens_out));
+  }
+  return absl::OkStatus();
+}
+
+}  // namespace phraseweld

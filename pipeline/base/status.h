@@ -1,0 +1,27 @@
+#ifndef PHRASEWELD_BASE_STATUS_H_
+#define PHRASEWELD_BASE_STATUS_H_
+
+#include <utility>
+
+#include "absl/status/status.h"
+#include "absl/status/statusor.h"
+
+// Abseil's 2022 release ships no such macros. Each returns from the enclosing function when the
+// expression is not OK.
+#define PW_CONCAT_INNER(a, b) a##b
+#define PW_CONCAT(a, b) PW_CONCAT_INNER(a, b)
+
+#define PW_RETURN_IF_ERROR(expression)                 \
+  do {                                                 \
+    if (auto pw_status = (expression); !pw_status.ok()) \
+      return pw_status;                                \
+  } while (false)
+
+#define PW_ASSIGN_OR_RETURN(target, expression) \
+  PW_ASSIGN_OR_RETURN_INNER(PW_CONCAT(pw_statusor_, __LINE__), target, expression)
+#define PW_ASSIGN_OR_RETURN_INNER(statusor, target, expression) \
+  auto statusor = (expression);                                 \
+  if (!statusor.ok()) return std::move(statusor).status();      \
+  target = *std::move(statusor)
+
+#endif  // PHRASEWELD_BASE_STATUS_H_

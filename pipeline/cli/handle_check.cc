@@ -1,0 +1,38 @@
+#include "absl/strings/str_format.h"
+#include "base/status.h"
+#include "base/units.h"
+#include "cli/handle_run.h"
+#include "config/job_file.h"
+#include "run/check.h"
+
+namespace phraseweld {
+
+absl::Status HandleCheck(const CheckArguments& arguments, Console& console) {
+  FileSystem& files = FileSystem::Posix();
+  PW_ASSIGN_OR_RETURN(const Job job, LoadJob(files, arguments.job_file, arguments.settings));
+  PW_ASSIGN_OR_RETURN(const CheckReport report, CheckJob(job, files));
+  const MemoryPlan& plan = report.plan;
+  std::ostream& out = *console.out;
+  out << WriteJobYaml(job) << "\n";
+  uint64_t stored = 0;
+  for (uint64_t size : report.sizes) stored += size;
+  const auto mebibytes = [](uint64_t bytes) {
+    return absl::StrFormat("%.1f MiB", static_cast<double>(bytes) / (1 << 20));
+  };
+  out << absl::StrFormat("# inputs    %d files, %s\n", static_cast<int>(report.inputs.size()),
+                         mebibytes(stored))
+      << absl::StrFormat("# memory    about %s of the limit of %s; %s\n",
+                         mebibytes(plan.memory_bytes), mebibytes(job.limits.memory),
+                         plan.on_disk ? "stream and counts on disk" : "everything in memory")
+      << absl::StrFormat("# disk      about %s for the results and %s while it runs; %s free\n",
+                         mebibytes(plan.output_bytes), mebibytes(plan.scratch_bytes),
+                         mebibytes(report.free_bytes))
+      << absl::StrFormat("# rounds    %d\n", plan.rounds)
+      << absl::StrFormat("# threads   %d\n", report.lanes);
+  if (plan.output_bytes + plan.scratch_bytes > report.free_bytes) {
+    *console.err << "warning: the disk has less free space than the run will need\n";
+  }
+  return absl::OkStatus();
+}
+
+}  // namespace phraseweld

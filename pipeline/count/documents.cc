@@ -1,0 +1,130 @@
+#include "count/documents.h"
+
+#include <utility>
+
+#include "base/status.h"
+
+namespace phraseweld {
+namespace {
+
+constexpr uint64_t kNowhere = ~uint64_t{0};
+// A scan gives pages back this often, so that the resident part of a mapped stream stays small.
+constexpr uint64_t kReleaseEvery = uint64_t{1} << 19;
+
+// What one part of the stream says of each item. The documents of a part are numbered from 1; the
+// first may have begun in an earlier part and the last may go on in the next.
+struct PartCounts {
+  explicit PartCounts(size_t items)
+      : documents(items, 0), last_document(items, 0), first(items, kNowhere) {}
+
+  void See(size_t item, uint64_t at) {
+    if (last_document[item] == document) return;
+    if (last_document[item] == 0) first[item] = at;
+    last_document[item] = document;
+    ++documents[item];
+  }
+
+  std::vector<uint32_t> documents;
+  std::vector<uint32_t> last_document;
+  std::vector<uint64_t> first;
+  uint32_t document = 1;        // the current one, in the end the last
+  uint64_t first_end = kNowhere;  // where the part's first document ends
+  bool ends_inside = false;
+};
+
+// Adds the parts up in their order; a document that lies in several parts counts once.
+SlotPlaces Combine(const std::vector<PartCounts>& parts, size_t items) {
+  SlotPlaces places{std::vector<uint64_t>(items, 0), std::vector<uint64_t>(items, kNowhere)};
+  std::vector<bool> open(items, false);  // seen in the document that goes on
+  bool goes_on = false;
+  for (const PartCounts& part : parts) {
+    for (size_t i = 0; i < items; ++i) {
+      const bool in_first = part.documents[i] > 0 && part.first[i] < part.first_end;
+      places.documents[i] += part.documents[i];
+      if (goes_on && open[i] && in_first) --places.documents[i];
+      if (places.first[i] == kNowhere) places.first[i] = part.first[i];
+      const bool in_last = part.documents[i] > 0 && part.last_document[i] == part.document;
+      if (!part.ends_inside) {
+        open[i] = false;
+      } else if (part.first_end == kNowhere) {
+        open[i] = (goes_on && open[i]) || in_last;
+      } else {
+        open[i] = in_last;
+      }
+    }
+    goes_on = part.ends_inside;
+  }
+  return places;
+}
+
+// Runs scan(part counts, begin, end) over the parts of the stream, on all lanes.
+template <typename ScanRange>
+absl::StatusOr<SlotPlaces> CountInParts(Lanes& lanes, const StreamView& stream, size_t items,
+                                        ScanRange&& scan) {
+  std::vector<std::pair<uint64_t, uint64_t>> ranges;
+  for (const auto& range : stream.Parts(static_cast<size_t>(lanes.lanes()))) {
+    if (range.first < range.second) ranges.push_back(range);
+  }
+  std::vector<PartCounts> parts(ranges.size(), PartCounts(items));
+  PW_RETURN_IF_ERROR(lanes.ForEach(ranges.size(), [&](int, size_t i) {
+    const auto [begin, end] = ranges[i];
+    // Chunk by chunk, so that pages can be given back on the way.
+    auto cut = std::lower_bound(stream.cuts.begin(), stream.cuts.end(), begin);
+    uint64_t held = begin;
+    for (; *cut < end; ++cut) {
+      scan(&parts[i], *cut, *(cut + 1));
+      if (*(cut + 1) - held >= kReleaseEvery) {
+        stream.release(held, *(cut + 1));
+        held = *(cut + 1);
+      }
+    }
+    stream.release(held, end);
+    parts[i].ends_inside = stream.entries[end - 1] != kDocumentEnd;
+    if (!parts[i].ends_inside) --parts[i].document;
+    return absl::OkStatus();
+  }));
+  return Combine(parts, items);
+}
+
+void EndDocument(PartCounts* part, uint64_t at) {
+  if (part->first_end == kNowhere) part->first_end = at;
+  ++part->document;
+}
+
+}  // namespace
+
+absl::StatusOr<SlotPlaces> CountSlotDocuments(Lanes& lanes, const StreamView& stream,
+                                              const SlotRules& rules, const SlotIndex& index,
+                                              size_t size) {
+  return CountInParts(lanes, stream, size, [&](PartCounts* part, uint64_t begin, uint64_t end) {
+    ScanSlots(
+        stream.entries, begin, end, rules,
+        [&](const Slot& slot, uint64_t left_at, uint64_t) {
+          const uint32_t item = index.Find(slot);
+          if (item != SlotIndex::kAbsent) part->See(item, left_at);
+        },
+        [&](uint64_t at, Entry mark) {
+          if (mark == kDocumentEnd) EndDocument(part, at);
+        });
+  });
+}
+
+absl::StatusOr<std::vector<uint64_t>> CountTypeDocuments(Lanes& lanes, const StreamView& stream,
+                                                         uint32_t word_types, size_t phrases) {
+  PW_ASSIGN_OR_RETURN(
+      SlotPlaces places,
+      CountInParts(lanes, stream, phrases, [&](PartCounts* part, uint64_t begin, uint64_t end) {
+        for (uint64_t at = begin; at < end; ++at) {
+          const Entry entry = stream.entries[at];
+          if (entry == kDocumentEnd) {
+            EndDocument(part, at);
+          } else if (!IsMark(entry)) {
+            const uint32_t type = entry & ~kInside;
+            if (type >= word_types) part->See(type - word_types, at);
+          }
+        }
+      }));
+  return std::move(places.documents);
+}
+
+}  // namespace phraseweld

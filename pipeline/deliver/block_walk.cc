@@ -1,0 +1,164 @@
+#include "deliver/block_walk.h"
+
+#include <algorithm>
+
+#include "absl/strings/str_cat.h"
+#include "base/json.h"
+#include "base/status.h"
+
+namespace phraseweld {
+namespace {
+
+absl::Status Changed() {
+  return absl::AbortedError(
+      "an input changed while the run was reading it (its words are not those of the first "
+      "reading); run again when the inputs are still");
+}
+
+}  // namespace
+
+std::string_view SurfaceGap(std::string_view gap) {
+  if (gap.empty() || gap == "-" || gap == "\xE2\x80\x90" || gap == "\xE2\x80\x91") return gap;
+  return " ";
+}
+
+BlockWalk::BlockWalk(const WalkOptions& options, const Entry* stream, uint64_t size,
+                     uint64_t begin, uint64_t end, std::string_view bytes, BlockOutput* output)
+    : options_(options), stream_(stream), size_(size), end_(end), at_(begin), bytes_(bytes),
+      output_(output) {
+  if (options_.wanted != nullptr) {
+    wanted_ = static_cast<size_t>(
+        std::lower_bound(options_.wanted->begin(), options_.wanted->end(), begin) -
+        options_.wanted->begin());
+  }
+  if (options_.source) output_->text.reserve(bytes.size() + 64);
+}
+
+bool BlockWalk::DocumentHasWordsBefore() const {
+  for (uint64_t at = at_; at > 0 && stream_[at - 1] != kDocumentEnd; --at) {
+    if (!IsMark(stream_[at - 1])) return true;
+  }
+  return false;
+}
+
+absl::Status BlockWalk::Piece(const WalkPiece& piece) {
+  if (options_.words) document_has_words_ = !piece.begins_document && DocumentHasWordsBefore();
+  if (options_.spans) {
+    output_->spans.push_back(
+        {"", piece.document, piece.field, piece.begins_passage, piece.ends_passage});
+  }
+  uint32_t previous_end = 0;
+  for (size_t i = 0; i < piece.words.size(); ++i) {
+    const WordSpan word = piece.words[i];
+    while (at_ < end_ && stream_[at_] == kBreak) ++at_;
+    if (at_ >= end_ || IsMark(stream_[at_])) return Changed();
+    const Entry entry = stream_[at_];
+    if (IsToken(entry)) {
+      if (in_token_) EndToken(piece, false);
+      BeginToken(entry, at_, piece, word);
+    } else if (i == 0) {
+      if (piece.begins_passage) return Changed();
+      BeginToken(entry, at_, piece, word);
+    } else {
+      const std::string_view gap =
+          piece.text.substr(previous_end, word.begin - previous_end);
+      Join(piece, previous_end, word.begin);
+      spelling_ += SurfaceGap(gap);
+    }
+    if (in_token_) {
+      spelling_ += piece.text.substr(word.begin, word.end - word.begin);
+      token_end_ = word.end;
+    }
+    if (options_.wanted != nullptr && wanted_ < options_.wanted->size() &&
+        (*options_.wanted)[wanted_] == at_) {
+      Find(piece, word);
+    }
+    previous_end = word.end;
+    ++at_;
+  }
+  if (in_token_) {
+    const bool goes_on = !piece.ends_passage && at_ < size_ && IsInside(stream_[at_]);
+    if (goes_on) {
+      Join(piece, previous_end, piece.text.size());
+      spelling_ += SurfaceGap(piece.text.substr(previous_end));
+    }
+    EndToken(piece, goes_on);
+  }
+  while (at_ < end_ && stream_[at_] == kBreak) ++at_;
+  if (!piece.ends_passage) return absl::OkStatus();
+  return Expect(piece.ends_document ? kDocumentEnd : kPassageEnd);
+}
+
+absl::Status BlockWalk::EmptyDocument(bool ends) {
+  document_has_words_ = false;
+  return ends ? Expect(kDocumentEnd) : absl::OkStatus();
+}
+
+absl::Status BlockWalk::Expect(Entry mark) {
+  if (at_ >= end_ || stream_[at_] != mark) return Changed();
+  ++at_;
+  if (mark == kDocumentEnd && options_.words) output_->words += '\n';
+  return absl::OkStatus();
+}
+
+void BlockWalk::BeginToken(Entry entry, uint64_t at, const WalkPiece& piece,
+                           const WordSpan& word) {
+  token_is_carried_ = IsInside(entry);
+  while (IsInside(stream_[at])) --at;
+  token_type_ = stream_[at];
+  if (options_.words && !token_is_carried_) {
+    if (document_has_words_) output_->words += ' ';
+    document_has_words_ = true;
+    output_->words += options_.types->Text(token_type_, options_.joiner);
+  }
+  in_token_ = options_.types->is_phrase(token_type_);
+  if (!in_token_) return;
+  spelling_.clear();
+  token_begin_ = word.begin;
+  if (options_.spans && !token_is_carried_) {
+    absl::StrAppend(&output_->spans.back().items, "[", piece.text_offset + token_begin_, ",");
+  }
+}
+
+void BlockWalk::EndToken(const WalkPiece& piece, bool goes_on) {
+  in_token_ = false;
+  if (options_.spans && !goes_on) {
+    std::string& items = output_->spans.back().items;
+    absl::StrAppend(&items, piece.text_offset + token_end_, ",");
+    AppendJsonString(&items, options_.types->Text(token_type_));
+    items += "],";
+  }
+  if (token_is_carried_) {
+    output_->has_carried_in = true;
+    output_->carried_in = spelling_;
+    output_->carried_in_type = token_type_;
+    output_->carries_on = goes_on;
+  } else if (goes_on) {
+    output_->has_carried_out = true;
+    output_->carried_out = spelling_;
+  } else if (options_.surfaces != nullptr) {
+    options_.surfaces->Count(token_type_, spelling_);
+  }
+}
+
+void BlockWalk::Join(const WalkPiece& piece, uint64_t gap_begin, uint64_t gap_end) {
+  if (!options_.source) return;
+  const uint64_t from = piece.to_source(gap_begin), to = piece.to_source(gap_end);
+  output_->text += bytes_.substr(copied_, from - copied_);
+  output_->joints.push_back({output_->text.size(), from, to});
+  output_->text += options_.source_joiner;
+  copied_ = to;
+}
+
+void BlockWalk::Find(const WalkPiece& piece, const WordSpan& word) {
+  output_->found.push_back(
+      {wanted_++, piece.document, piece.field, piece.text_offset + word.begin});
+}
+
+absl::Status BlockWalk::Finish() {
+  if (at_ != end_) return Changed();
+  if (options_.source) output_->text += bytes_.substr(copied_);
+  return absl::OkStatus();
+}
+
+}  // namespace phraseweld

@@ -1,0 +1,78 @@
+#include "files/entry_array.h"
+
+#include <sys/mman.h>
+#include <unistd.h>
+
+#include <cerrno>
+#include <cstring>
+
+#include "absl/strings/str_cat.h"
+#include "base/status.h"
+
+namespace phraseweld {
+
+absl::StatusOr<std::unique_ptr<EntryArray>> EntryArray::InMemory(uint64_t capacity) {
+  std::unique_ptr<EntryArray> array(new EntryArray);
+  array->capacity_ = capacity;
+  array->mapped_bytes_ = std::max<uint64_t>(capacity * sizeof(Entry), 4096);
+  void* mapped = mmap(nullptr, array->mapped_bytes_, PROT_READ | PROT_WRITE,
+                      MAP_PRIVATE | MAP_ANONYMOUS | MAP_NORESERVE, -1, 0);
+  if (mapped == MAP_FAILED) {
+    return absl::ResourceExhaustedError(absl::StrCat(
+        "cannot reserve ", array->mapped_bytes_, " bytes of address space for the token stream: ",
+        strerror(errno), "; a smaller limits.memory keeps the stream in a file"));
+  }
+  madvise(mapped, array->mapped_bytes_, MADV_HUGEPAGE);  // best effort: fewer page faults
+  array->data_ = static_cast<Entry*>(mapped);
+  return array;
+}
+
+absl::StatusOr<std::unique_ptr<EntryArray>> EntryArray::OnFile(FileSystem& files,
+                                                               const std::string& path) {
+  std::unique_ptr<EntryArray> array(new EntryArray);
+  PW_ASSIGN_OR_RETURN(array->scratch_, files.CreateScratch(path));
+  return array;
+}
+
+EntryArray::~EntryArray() {
+  if (data_ != nullptr) munmap(data_, mapped_bytes_);
+}
+
+absl::Status EntryArray::Write(uint64_t at, absl::Span<const Entry> entries) {
+  if (scratch_ != nullptr) {
+    return scratch_->WriteAt(at * sizeof(Entry),
+                             std::string_view(reinterpret_cast<const char*>(entries.data()),
+                                              entries.size() * sizeof(Entry)));
+  }
+  if (at + entries.size() > capacity_) {
+    return absl::AbortedError(
+        "the inputs grew while they were read; run again when they are still");
+  }
+  std::memcpy(data_ + at, entries.data(), entries.size() * sizeof(Entry));
+  return absl::OkStatus();
+}
+
+absl::Status EntryArray::Seal(uint64_t size) {
+  size_ = size;
+  if (scratch_ == nullptr || size == 0) return absl::OkStatus();
+  mapped_bytes_ = size * sizeof(Entry);
+  void* mapped =
+      mmap(nullptr, mapped_bytes_, PROT_READ | PROT_WRITE, MAP_SHARED, scratch_->descriptor(), 0);
+  if (mapped == MAP_FAILED) {
+    return absl::ResourceExhaustedError(absl::StrCat("cannot map the token stream of ",
+                                                     mapped_bytes_, " bytes: ", strerror(errno)));
+  }
+  data_ = static_cast<Entry*>(mapped);
+  return absl::OkStatus();
+}
+
+void EntryArray::Release(uint64_t begin, uint64_t end) {
+  if (scratch_ == nullptr || begin >= end) return;
+  constexpr uint64_t kPage = 4096;
+  // Whole pages only; the ones at the ends may still be in use by a neighbour.
+  const uint64_t from = (begin * sizeof(Entry) + kPage - 1) / kPage * kPage;
+  const uint64_t to = end * sizeof(Entry) / kPage * kPage;
+  if (from < to) madvise(reinterpret_cast<char*>(data_) + from, to - from, MADV_DONTNEED);
+}
+
+}  // namespace phraseweld

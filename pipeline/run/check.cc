@@ -1,0 +1,29 @@
+#include "run/check.h"
+
+#include "base/status.h"
+#include "run/lanes.h"
+#include "run/passes.h"
+
+namespace phraseweld {
+
+absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files) {
+  PW_RETURN_IF_ERROR(FunctionWordForms(job).status());
+  PW_RETURN_IF_ERROR(ResolveRulings(job).status());
+  CheckReport report;
+  PW_ASSIGN_OR_RETURN(report.inputs, ResolveInputs(job.corpus.files));
+  PW_ASSIGN_OR_RETURN(report.sizes, InputSizes(files, report.inputs));
+  report.lanes = ThreadLanes(job.limits.threads, nullptr).lanes();
+  report.plan = PlanMemory(job, report.inputs, report.sizes, report.lanes, RunControls{});
+  // The run folder need not exist yet: ask the nearest folder above it that does.
+  std::string folder = job.run_folder;
+  for (;;) {
+    PW_ASSIGN_OR_RETURN(FileInfo info, files.Stat(folder));
+    if (info.exists) break;
+    const size_t slash = folder.rfind('/');
+    folder = slash == std::string::npos ? "." : slash == 0 ? "/" : folder.substr(0, slash);
+  }
+  PW_ASSIGN_OR_RETURN(report.free_bytes, files.FreeBytes(folder));
+  return report;
+}
+
+}  // namespace phraseweld

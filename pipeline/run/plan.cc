@@ -1,0 +1,77 @@
+#include "run/plan.h"
+
+#include <algorithm>
+
+#include "base/status.h"
+
+namespace phraseweld {
+namespace {
+
+// Ratios as measured on English, German and French prose; see DEVELOPERS.md, "Memory".
+constexpr double kBytesPerEntry = 5.4;        // of text, for a word or a mark
+constexpr double kMemoryPerEntry = 21.0;      // stream, counts and their changes, all in memory
+constexpr double kScratchPerEntry = 26.0;     // the same on disk
+constexpr double kCompression = 4.0;          // of .zst and .gz inputs
+constexpr uint64_t kBase = uint64_t{40} << 20;  // program, ICU's tables, caches of the lanes
+
+bool EndsWith(const std::string& text, const char* end) {
+  const std::string tail(end);
+  return text.size() >= tail.size() && text.compare(text.size() - tail.size(), tail.size(), tail) == 0;
+}
+
+}  // namespace
+
+absl::StatusOr<std::vector<uint64_t>> InputSizes(FileSystem& files,
+                                                 const std::vector<InputFile>& inputs) {
+  std::vector<uint64_t> sizes;
+  for (const InputFile& input : inputs) {
+    if (input.path == "-") {
+      sizes.push_back(0);
+      continue;
+    }
+    PW_ASSIGN_OR_RETURN(FileInfo info, files.Stat(input.path));
+    sizes.push_back(info.size);
+  }
+  return sizes;
+}
+
+MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
+                      const std::vector<uint64_t>& sizes, int lanes, const RunControls& controls) {
+  MemoryPlan plan;
+  bool unknown = false;
+  for (size_t i = 0; i < inputs.size(); ++i) {
+    const bool packed = EndsWith(inputs[i].path, ".zst") || EndsWith(inputs[i].path, ".gz");
+    unknown = unknown || packed || inputs[i].path == "-";
+    plan.text_bytes += packed ? static_cast<uint64_t>(static_cast<double>(sizes[i]) * kCompression)
+                              : sizes[i];
+  }
+  const double text = static_cast<double>(plan.text_bytes);
+  plan.entries = static_cast<uint64_t>(text / kBytesPerEntry);
+  plan.exact_size = !unknown;
+  const uint64_t limit = job.limits.memory;
+  plan.blocks_in_flight = static_cast<size_t>(2 * lanes + 1);
+  // A block in flight costs its bytes, its entries or its rewritten text, and its word places:
+  // about five times its size. A quarter of the limit goes to all of them.
+  const uint64_t block = limit / 4 / (5 * plan.blocks_in_flight);
+  plan.block_bytes = static_cast<size_t>(
+      std::clamp<uint64_t>(block, uint64_t{64} << 10, uint64_t{1} << 20));
+  const uint64_t blocks = 5 * plan.blocks_in_flight * plan.block_bytes;
+  const auto in_memory =
+      static_cast<uint64_t>(static_cast<double>(plan.entries) * kMemoryPerEntry) + kBase + blocks;
+  // What an archive holds is only known once it has been read, so its stream goes to disk unless
+  // there is ample room.
+  plan.on_disk = controls.force_disk || in_memory > (unknown ? limit / 2 : limit);
+  plan.memory_bytes = plan.on_disk ? limit : in_memory;
+  if (plan.on_disk) {
+    plan.working_bytes = std::max<uint64_t>(limit / 4, uint64_t{4} << 20);
+    plan.scratch_bytes =
+        static_cast<uint64_t>(static_cast<double>(plan.entries) * kScratchPerEntry);
+  }
+  if (job.deliver.corpus != CorpusForm::kNone) plan.output_bytes = plan.text_bytes;
+  plan.chunk_entries = plan.on_disk ? uint64_t{1} << 16 : uint64_t{1} << 18;
+  if (controls.block_bytes > 0) plan.block_bytes = controls.block_bytes;
+  if (controls.chunk_entries > 0) plan.chunk_entries = controls.chunk_entries;
+  return plan;
+}
+
+}  // namespace phraseweld

@@ -1,0 +1,129 @@
+#include "run/run.h"
+
+#include <chrono>
+
+#include "absl/strings/str_cat.h"
+#include "base/status.h"
+#include "config/job_file.h"
+#include "files/run_folder_writer.h"
+#include "run/corpus_reading.h"
+#include "run/delivery.h"
+#include "run/manifest.h"
+#include "run/passes.h"
+#include "run/plan.h"
+
+namespace phraseweld {
+namespace {
+
+// Standard input can be read once, and the job reads its inputs twice.
+absl::StatusOr<std::vector<InputFile>> KeepStandardInput(std::vector<InputFile> inputs,
+                                                         const std::string& scratch,
+                                                         FileSystem& files) {
+  for (InputFile& input : inputs) {
+    if (input.path != "-") continue;
+    PW_ASSIGN_OR_RETURN(std::unique_ptr<InputStream> in, InputStream::Open(files, "-"));
+    input.path = scratch + "/stdin";
+    PW_ASSIGN_OR_RETURN(std::unique_ptr<WriteFile> out, files.CreateWrite(input.path));
+    std::vector<char> buffer(size_t{1} << 18);
+    for (;;) {
+      PW_ASSIGN_OR_RETURN(size_t size, in->Read(buffer.data(), buffer.size()));
+      if (size == 0) break;
+      PW_RETURN_IF_ERROR(out->Append(std::string_view(buffer.data(), size)));
+    }
+    PW_RETURN_IF_ERROR(out->Close());
+  }
+  return inputs;
+}
+
+absl::StatusOr<DeliveredFile> DeliverText(const std::string& folder, const std::string& path,
+                                          std::string_view text, FileSystem& files) {
+  PW_ASSIGN_OR_RETURN(std::unique_ptr<OutputStream> out,
+                      OutputStream::Create(files, folder + "/" + path, false));
+  PW_RETURN_IF_ERROR(out->Append(text));
+  PW_ASSIGN_OR_RETURN(OutputDigest digest, out->Finish());
+  return DeliveredFile{path, digest};
+}
+
+RunSummary Summarise(const EncodedCorpus& corpus, const PassResults& results,
+                     const std::vector<PhraseRecord>& phrases) {
+  RunSummary summary;
+  summary.totals.documents = corpus.documents;
+  summary.totals.words = corpus.words;
+  summary.totals.word_types = corpus.word_types;
+  summary.totals.bad_lines = corpus.bad_lines;
+  summary.totals.passes = static_cast<uint64_t>(results.passes.empty() ? 0 : results.passes.back().number);
+  summary.totals.phrases = phrases.size();
+  summary.totals.tokens_out = results.tokens_out;
+  for (const PhraseRecord& phrase : phrases) {
+    ++summary.phrases_by_length[phrase.words];
+    summary.totals.words_in_phrases += phrase.occurrences * static_cast<uint64_t>(phrase.words);
+  }
+  if (corpus.bad_lines > 0) {
+    summary.warnings.push_back(absl::StrCat(
+        corpus.bad_lines, " lines are no JSON objects and were passed through untouched"));
+  }
+  for (const ResolvedRuling& ruling : results.rulings) {
+    if (ruling.used) continue;
+    summary.warnings.push_back(absl::StrCat(
+        ruling.ruling.file, ":", ruling.ruling.line, ": '", ruling.ruling.phrase,
+        ruling.ruling.always ? "' is ruled always, and occurs nowhere"
+                             : "' is ruled never, and would not have been made anyway"));
+  }
+  summary.scratch_bytes = results.scratch_bytes;
+  summary.rounds = results.rounds;
+  return summary;
+}
+
+}  // namespace
+
+absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, FileSystem& files,
+                                  const Observer& observer) {
+  const auto begun = std::chrono::steady_clock::now();
+  Timings timings;
+  PW_ASSIGN_OR_RETURN(std::vector<std::string> function_words, FunctionWordForms(job));
+  PW_ASSIGN_OR_RETURN(std::vector<ResolvedRuling> rulings, ResolveRulings(job));
+  PW_ASSIGN_OR_RETURN(const std::vector<InputFile> named, ResolveInputs(job.corpus.files));
+  PW_ASSIGN_OR_RETURN(std::unique_ptr<RunFolderWriter> folder,
+                      RunFolderWriter::Open(files, job.run_folder, controls.fresh));
+  PW_ASSIGN_OR_RETURN(const std::vector<InputFile> inputs,
+                      KeepStandardInput(named, folder->scratch(), files));
+  PW_ASSIGN_OR_RETURN(const std::vector<uint64_t> sizes, InputSizes(files, inputs));
+  ThreadLanes lanes(job.limits.threads, observer.stop);
+  const MemoryPlan plan = PlanMemory(job, inputs, sizes, lanes.lanes(), controls);
+
+  timings.Begin("read");
+  observer.stage({0, "", "read", plan.text_bytes, "bytes"});
+  EncodedCorpus corpus;
+  PW_RETURN_IF_ERROR(EncodeCorpus(job, inputs, plan, function_words, folder->scratch(), files,
+                                  lanes, observer, &corpus));
+  PassResults results;
+  PW_RETURN_IF_ERROR(RunPasses(job, plan, function_words, std::move(rulings), folder->scratch(),
+                               files, lanes, observer, &timings, &corpus, &results));
+  timings.Begin("rewrite");
+  observer.stage({0, "", "rewrite", corpus.text_bytes, "bytes"});
+  Delivery delivery;
+  std::vector<DeliveredFile> written;
+  PW_RETURN_IF_ERROR(DeliverCorpus(job, inputs, plan, folder->folder(), files, lanes, observer,
+                                   corpus, results, &delivery, &written));
+  timings.Begin("records");
+  PW_ASSIGN_OR_RETURN(std::vector<PhraseRecord> phrases,
+                      DeliverRecords(folder->folder(), files, lanes, corpus, results, delivery,
+                                     &written));
+  PW_ASSIGN_OR_RETURN(DeliveredFile job_file, DeliverText(folder->folder(), "job.yaml",
+                                                          WriteJobYaml(job), files));
+  written.push_back(job_file);
+  RunSummary summary = Summarise(corpus, results, phrases);
+  timings.End();
+  PW_RETURN_IF_ERROR(DeliverText(folder->folder(), "manifest.json",
+                                 ManifestJson(job, named, corpus.digests, std::move(written),
+                                              summary.totals, timings.seconds()),
+                                 files)
+                         .status());
+  PW_RETURN_IF_ERROR(folder->Commit());
+  summary.run_folder = job.run_folder;
+  summary.seconds =
+      std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();
+  return summary;
+}
+
+}  // namespace phraseweld

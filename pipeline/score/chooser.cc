@@ -1,0 +1,171 @@
+#include "score/chooser.h"
+
+#include <algorithm>
+#include <cmath>
+#include <string>
+#include <utility>
+
+#include "score/measures.h"
+
+namespace phraseweld {
+namespace {
+
+bool WordsBefore(const TypeTable& types, const std::vector<uint32_t>& a,
+                 const std::vector<uint32_t>& b) {
+  return std::lexicographical_compare(
+      a.begin(), a.end(), b.begin(), b.end(),
+      [&](uint32_t x, uint32_t y) { return types.form(x) < types.form(y); });
+}
+
+std::vector<uint32_t> WordsOf(const TypeTable& types, uint32_t type) {
+  std::vector<uint32_t> words;
+  types.AppendWords(type, &words);
+  return words;
+}
+
+}  // namespace
+
+bool RankOrder::operator()(const Candidate& a, const Candidate& b) const {
+  if (a.score != b.score) return a.score > b.score;
+  if (a.table.n != b.table.n) return a.table.n > b.table.n;
+  if (a.slot == b.slot) return false;
+  if (int by_text = types_->Text(types_->SlotWords(a.slot, *codes_))
+                        .compare(types_->Text(types_->SlotWords(b.slot, *codes_)));
+      by_text != 0) {
+    return by_text < 0;
+  }
+  if (int by_left = types_->Text(a.slot.left).compare(types_->Text(b.slot.left)); by_left != 0) {
+    return by_left < 0;
+  }
+  const std::vector<uint32_t> bridge_a = codes_->Words(a.slot.bridge);
+  const std::vector<uint32_t> bridge_b = codes_->Words(b.slot.bridge);
+  if (int by_bridge = types_->Text(bridge_a).compare(types_->Text(bridge_b)); by_bridge != 0) {
+    return by_bridge < 0;
+  }
+  const std::vector<uint32_t> left_a = WordsOf(*types_, a.slot.left);
+  const std::vector<uint32_t> left_b = WordsOf(*types_, b.slot.left);
+  if (left_a != left_b) return WordsBefore(*types_, left_a, left_b);
+  if (bridge_a != bridge_b) return WordsBefore(*types_, bridge_a, bridge_b);
+  return WordsBefore(*types_, WordsOf(*types_, a.slot.right), WordsOf(*types_, b.slot.right));
+}
+
+Chooser::Chooser(const PassOptions& pass, const PhraseRules& rules, size_t never_rulings,
+                 int lanes, size_t near_capacity)
+    : pass_(pass), rules_(rules), order_(*rules.types, *rules.codes),
+      near_capacity_(near_capacity) {
+  for (const Gate& gate : pass.accept) {
+    const double least = std::ceil(gate.least);
+    if (gate.quantity == Quantity::kOccurrences && least > 1) {
+      least_occurrences_ = static_cast<uint64_t>(least);
+    }
+    if (gate.quantity == Quantity::kDocuments && least > 0) {
+      least_documents_ = static_cast<uint64_t>(least);
+    }
+  }
+  ranks_late_ = IsLate(pass.rank_by);
+  lanes_.resize(static_cast<size_t>(lanes));
+  for (Lane& lane : lanes_) lane.never_used.resize(never_rulings);
+}
+
+void Chooser::Consider(int lane_number, const Slot& slot, SlotTable table) {
+  Lane& lane = lanes_[static_cast<size_t>(lane_number)];
+  const int bridge_words = rules_.codes->Length(slot.bridge);
+  const TypeTable& types = *rules_.types;
+  if (types.word_count(slot.left) + bridge_words + types.word_count(slot.right) > rules_.longest) {
+    return;
+  }
+  if (rules_.numbers_not_first != nullptr && rules_.numbers_not_first->HasChecked(slot.left)) {
+    return;
+  }
+  if (pass_.margins == Margins::kWords) {
+    if (slot.bridge == 0) {
+      table.left = (*rules_.token_frequency)[slot.left];
+      table.right = (*rules_.token_frequency)[slot.right];
+      table.total = rules_.tokens;
+    }
+    table.all = rules_.tokens;
+  }
+  Candidate candidate;
+  candidate.slot = slot;
+  candidate.table = table;
+  for (const Gate& gate : pass_.accept) {
+    if (gate.quantity == Quantity::kOccurrences || IsLate(gate.quantity)) continue;
+    if (Score(gate.quantity, table) >= gate.least) continue;
+    if (candidate.failed) return;
+    candidate.failed = gate.quantity;
+  }
+  // A type cannot be in more documents than it has slots.
+  if (candidate.failed && table.n < least_documents_) return;
+  if (!rules_.never.empty()) {
+    auto ruling = rules_.never.find(types.SlotWords(slot, *rules_.codes));
+    if (ruling != rules_.never.end()) {
+      if (!candidate.failed) lane.never_used[ruling->second] = true;
+      return;
+    }
+  }
+  if (!ranks_late_) candidate.score = Score(pass_.rank_by, table);
+  if (!candidate.failed) {
+    lane.passing.push_back(std::move(candidate));
+    return;
+  }
+  lane.failing.push_back(std::move(candidate));
+  if (!ranks_late_ && lane.failing.size() >= 2 * near_capacity_) Trim(&lane);
+}
+
+void Chooser::Trim(Lane* lane) {
+  if (lane->failing.size() <= near_capacity_) return;
+  std::nth_element(lane->failing.begin(),
+                   lane->failing.begin() + static_cast<ptrdiff_t>(near_capacity_ - 1),
+                   lane->failing.end(), order_);
+  lane->failing.resize(near_capacity_);
+  lane->worst_kept = lane->failing.back();
+}
+
+std::vector<Candidate> Chooser::Pending() {
+  std::vector<Candidate> pending;
+  bound_.reset();
+  for (Lane& lane : lanes_) {
+    if (!ranks_late_) Trim(&lane);
+    if (lane.worst_kept && (!bound_ || order_(*lane.worst_kept, *bound_))) bound_ = lane.worst_kept;
+    pending.insert(pending.end(), std::make_move_iterator(lane.passing.begin()),
+                   std::make_move_iterator(lane.passing.end()));
+    pending.insert(pending.end(), std::make_move_iterator(lane.failing.begin()),
+                   std::make_move_iterator(lane.failing.end()));
+    lane.passing.clear();
+    lane.failing.clear();
+  }
+  return pending;
+}
+
+std::optional<Choice> Chooser::Choose(std::vector<Candidate> pending) const {
+  Choice choice;
+  for (Candidate& candidate : pending) {
+    int failed = candidate.failed ? 1 : 0;
+    for (const Gate& gate : pass_.accept) {
+      if (!IsLate(gate.quantity)) continue;
+      if (Score(gate.quantity, candidate.table) >= gate.least) continue;
+      ++failed;
+      candidate.failed = gate.quantity;
+    }
+    if (ranks_late_) candidate.score = Score(pass_.rank_by, candidate.table);
+    if (failed == 0) choice.accepted.push_back(candidate);
+    if (failed == 1) choice.near_misses.push_back(candidate);
+  }
+  std::sort(choice.accepted.begin(), choice.accepted.end(), order_);
+  if (pass_.take && choice.accepted.size() > *pass_.take) choice.accepted.resize(*pass_.take);
+  std::sort(choice.near_misses.begin(), choice.near_misses.end(), order_);
+  if (choice.near_misses.size() > kMostNearMisses) choice.near_misses.resize(kMostNearMisses);
+  if (bound_ && (choice.near_misses.size() < kMostNearMisses ||
+                 order_(*bound_, choice.near_misses.back()))) {
+    return std::nullopt;
+  }
+  choice.never_used.resize(lanes_.front().never_used.size());
+  for (const Lane& lane : lanes_) {
+    for (size_t i = 0; i < lane.never_used.size(); ++i) {
+      if (lane.never_used[i]) choice.never_used[i] = true;
+    }
+  }
+  return choice;
+}
+
+}  // namespace phraseweld

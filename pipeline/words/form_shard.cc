@@ -1,0 +1,95 @@
+#include "words/form_shard.h"
+
+#include <cstring>
+
+namespace phraseweld {
+namespace {
+
+constexpr size_t kLeastSlots = 64;
+
+}  // namespace
+
+uint32_t FormShard::Add(std::string_view form, uint64_t hash) {
+  const uint32_t found = Find(form, hash);
+  if (found != kNone || size_ == most_forms_) return found;
+  const uint32_t offset = Store(form);
+  if (offset == kNone) return kNone;
+  if ((uint64_t{size_} + 1) * 8 > slots_.size() * 7) Grow();
+  const uint32_t index = size_++;
+  if (index % kChunk == 0) records_.push_back(std::make_unique<Record[]>(kChunk));
+  record(index) = {kNeverSeen, offset};
+  Place({static_cast<uint32_t>(hash), index});
+  return index;
+}
+
+uint32_t FormShard::Find(std::string_view form, uint64_t hash) const {
+  if (slots_.empty()) return kNone;
+  const auto wanted = static_cast<uint32_t>(hash);
+  const size_t mask = slots_.size() - 1;
+  for (size_t slot = wanted & mask; slots_[slot].index != kNone; slot = (slot + 1) & mask) {
+    if (slots_[slot].hash == wanted && this->form(slots_[slot].index) == form) {
+      return slots_[slot].index;
+    }
+  }
+  return kNone;
+}
+
+std::string_view FormShard::form(uint32_t index) const {
+  const uint32_t offset = record(index).offset;
+  const char* at = arena_[offset / kArenaBytes].get() + offset % kArenaBytes;
+  size_t length = 0;
+  int shift = 0;
+  for (; static_cast<unsigned char>(*at) >= 0x80; ++at, shift += 7) {
+    length |= static_cast<size_t>(*at & 0x7F) << shift;
+  }
+  length |= static_cast<size_t>(*at++) << shift;
+  return {at, length};
+}
+
+uint64_t FormShard::memory() const {
+  return slots_.capacity() * sizeof(Slot) +
+         records_.size() * kChunk * sizeof(Record) + arena_bytes_ +
+         (records_.capacity() + arena_.capacity()) * sizeof(void*);
+}
+
+uint32_t FormShard::Store(std::string_view form) {
+  char length[10];
+  size_t length_bytes = 0;
+  size_t rest = form.size();
+  for (; rest >= 0x80; rest >>= 7) length[length_bytes++] = static_cast<char>(rest | 0x80);
+  length[length_bytes++] = static_cast<char>(rest);
+  const size_t bytes = length_bytes + form.size();
+  if (arena_used_ + bytes > kArenaBytes) {
+    const size_t blocks = (bytes + kArenaBytes - 1) / kArenaBytes;
+    if ((arena_.size() + blocks) * kArenaBytes > kNone) return kNone;
+    arena_.push_back(std::make_unique<char[]>(blocks * kArenaBytes));
+    arena_bytes_ += blocks * kArenaBytes;
+    arena_used_ = 0;
+  }
+  const size_t block = arena_.size() - 1;
+  const size_t offset = block * kArenaBytes + arena_used_;
+  char* at = arena_[block].get() + arena_used_;
+  std::memcpy(at, length, length_bytes);
+  std::memcpy(at + length_bytes, form.data(), form.size());
+  arena_used_ += bytes;
+  while (arena_.size() * kArenaBytes < offset + bytes) arena_.emplace_back();
+  if (arena_.size() - 1 != block) arena_used_ = kArenaBytes;
+  return static_cast<uint32_t>(offset);
+}
+
+void FormShard::Place(Slot entry) {
+  const size_t mask = slots_.size() - 1;
+  size_t slot = entry.hash & mask;
+  while (slots_[slot].index != kNone) slot = (slot + 1) & mask;
+  slots_[slot] = entry;
+}
+
+void FormShard::Grow() {
+  std::vector<Slot> old(slots_.empty() ? kLeastSlots : slots_.size() * 2);
+  old.swap(slots_);
+  for (const Slot& entry : old) {
+    if (entry.index != kNone) Place(entry);
+  }
+}
+
+}  // namespace phraseweld

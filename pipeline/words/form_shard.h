@@ -1,0 +1,75 @@
+#ifndef PHRASEWELD_WORDS_FORM_SHARD_H_
+#define PHRASEWELD_WORDS_FORM_SHARD_H_
+
+#include <cstdint>
+#include <memory>
+#include <string_view>
+#include <vector>
+
+namespace phraseweld {
+
+// A share of the forms of a vocabulary: a hash table, and the forms' bytes one after another.
+// Costs 12 bytes a form, 9 to 20 for its place in the table, 1 to 5 for its length, and its bytes.
+// Not thread-safe, but for const members.
+class FormShard {
+ public:
+  static constexpr uint32_t kNone = 0xFFFFFFFFu;
+  static constexpr uint64_t kNeverSeen = ~uint64_t{0};
+
+  // Holds at most `most_forms` forms and 4 GiB of their bytes.
+  explicit FormShard(uint32_t most_forms) : most_forms_(most_forms) {}
+
+  // The index of `form`, whose hash is `hash`; added, never seen yet, where it is new. Indexes count
+  // from 0 in the order of adding. kNone where the form is new and the shard full.
+  uint32_t Add(std::string_view form, uint64_t hash);
+  // The index of `form`, or kNone.
+  uint32_t Find(std::string_view form, uint64_t hash) const;
+
+  uint32_t size() const { return size_; }
+  std::string_view form(uint32_t index) const;
+  // 8 bytes at the caller's disposal, kNeverSeen at first.
+  uint64_t note(uint32_t index) const { return record(index).note; }
+  void set_note(uint32_t index, uint64_t note) { record(index).note = note; }
+
+  // Bytes allocated.
+  uint64_t memory() const;
+
+ private:
+  // Records come in chunks, so that growing never holds two copies: 1024 forms, 12 KiB.
+  static constexpr uint32_t kChunk = 1024;
+  // 16 KiB: 64 shards that have just begun one waste 1 MiB at most.
+  static constexpr uint32_t kArenaBytes = 1u << 14;
+
+  struct Slot {
+    uint32_t hash = 0;  // its low half: the slot to begin at, and a test before the form's
+    uint32_t index = kNone;
+  };
+
+  // Packed, since the four bytes of padding would be a tenth of what a form costs.
+  struct [[gnu::packed]] Record {
+    uint64_t note;
+    uint32_t offset;  // of the form in the arena
+  };
+
+  Record& record(uint32_t index) { return records_[index / kChunk][index % kChunk]; }
+  const Record& record(uint32_t index) const { return records_[index / kChunk][index % kChunk]; }
+
+  // Returns the arena offset of a copy of `form`, kNone where there is none left.
+  uint32_t Store(std::string_view form);
+  void Place(Slot entry);
+  void Grow();
+
+  std::vector<Slot> slots_;  // open addressing, linear probing; a power of two, at most 7/8 full
+  uint32_t size_ = 0;
+  std::vector<std::unique_ptr<Record[]>> records_;
+  // A form is its length in base 128, then its bytes. Blocks are kArenaBytes long; a form that is
+  // longer takes several block numbers, of which the first has it all and the others have nothing.
+  std::vector<std::unique_ptr<char[]>> arena_;
+  size_t arena_used_ = kArenaBytes;  // of the last block
+  uint64_t arena_bytes_ = 0;
+  uint32_t most_forms_;
+};
+
+}  // namespace phraseweld
+
+#endif  // PHRASEWELD_WORDS_FORM_SHARD_H_
