@@ -48,7 +48,7 @@ std::string Join(const Range& texts, std::string_view between) {
   return joined;
 }
 
-// The pieces between the separators; one more than there are separators.
+// The pieces between the separators; one more than there are separators. They point into `text`.
 std::vector<std::string_view> Split(std::string_view text, char separator);
 
 bool Contains(std::string_view text, std::string_view part);

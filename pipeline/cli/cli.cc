@@ -47,17 +47,22 @@ struct Program {
   }
 };
 
-bool IsOption(const std::string& word) { return word.size() > 1 && word[0] == '-'; }
+bool IsOption(const std::string& word) {
+  return word[0] == '-' && word.find_first_not_of('-') != std::string::npos;
+}
 
 std::string UnknownOption(const CLI::App& parser, const std::string& word) {
-  const std::string name = word.substr(0, word.find('='));
-  std::vector<std::string> known = {"-h", "--help"};
+  // Compared without their dashes, which all have in common and which are easily miscounted.
+  std::vector<std::string> known = {"help"};
   for (const CLI::Option* option : parser.get_options()) {
-    for (const std::string& each : option->get_snames()) known.push_back("-" + each);
-    for (const std::string& each : option->get_lnames()) known.push_back("--" + each);
+    for (const std::string& name : option->get_lnames()) known.push_back(name);
   }
+  const std::string name = word.substr(0, word.find('='));
+  const std::string bare = name.substr(name.find_first_not_of('-'));
   const std::vector<std::string_view> names(known.begin(), known.end());
-  return Concat("unknown option '", name, "'", DidYouMean(name, names));
+  const auto nearest = NearestName(bare, names);
+  return Concat("unknown option '", name, "'",
+                nearest.has_value() ? Concat("; did you mean '--", *nearest, "'?") : "");
 }
 
 std::string UnknownCommand(const Program& program, const std::string& word) {

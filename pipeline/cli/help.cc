@@ -57,7 +57,7 @@ std::string Usage(const CLI::App& app, std::string_view command) {
   std::string usage = Concat("  phraseweld ", command);
   for (const CLI::Option* option : app.get_options()) {
     if (!option->get_positional()) continue;
-    const bool several = option->get_items_expected_max() > 1 || option->get_trigger_on_parse();
+    const bool several = option->get_items_expected_max() > 1;
     AppendTo(&usage, " ", option->get_name(), several ? "..." : "");
   }
   return usage + " [options]\n";

@@ -22,11 +22,7 @@ inline void AddArgument(CLI::App& app, const std::string& name, std::string& tar
 // One argument or more.
 inline void AddArguments(CLI::App& app, const std::string& name, std::vector<std::string>& target,
                          const std::string& meaning) {
-  app.add_option_function<std::string>(
-         name, [&target](const std::string& word) { target.push_back(word); }, meaning)
-      ->required()
-      ->trigger_on_parse()
-      ->allow_extra_args(false);
+  app.add_option(name, target, meaning)->required()->allow_extra_args(false);
 }
 
 inline void AddOption(CLI::App& app, const std::string& names, const std::string& value,

@@ -80,13 +80,13 @@ std::string Progress::Text(const ProgressPoint& point, double now) const {
   if (point.pass > 0) AppendTo(&text, "pass ", point.pass, " (", point.pass_name, "): ");
   AppendTo(&text, point.stage, ", ");
   if (point.total > 0) {
-    const double share = std::min(1.0, static_cast<double>(point.done) / point.total);
-    const bool same_unit_twice = point.unit == "bytes";
-    AppendTo(
-        &text,
-        same_unit_twice ? RoundedBytes(static_cast<double>(point.done)) : FormatCount(point.done),
-        " of ", Amount(static_cast<double>(point.total), point.unit), " (",
-        static_cast<int>(share * 100), " %)");
+    const double share =
+        std::min(1.0, static_cast<double>(point.done) / static_cast<double>(point.total));
+    // The unit of a count follows the second number only; sizes carry their own.
+    const bool sizes = point.unit == "bytes";
+    AppendTo(&text, sizes ? RoundedBytes(static_cast<double>(point.done)) : FormatCount(point.done),
+             " of ", Amount(static_cast<double>(point.total), point.unit), " (",
+             static_cast<int>(share * 100), "%)");
   } else {
     AppendTo(&text, Amount(static_cast<double>(point.done), point.unit));
   }

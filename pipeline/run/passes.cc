@@ -40,7 +40,7 @@ class PassLoop {
 
  private:
   absl::Status CountAll(SlotCounter* counter);
-  absl::StatusOr<std::unique_ptr<SlotCounter>> NewCounter();
+  absl::StatusOr<std::unique_ptr<SlotCounter>> NewCounter(const char* purpose);
   absl::StatusOr<Choice> Choose(const PassOptions& options, uint64_t tokens);
   absl::Status FillDocuments(std::vector<Candidate>* pending);
   absl::Status MergeAccepted(PassRecord* record, bool count_changes);
@@ -201,7 +201,7 @@ absl::Status PassLoop::JoinRulings() {
   return absl::OkStatus();
 }
 
-absl::StatusOr<std::unique_ptr<SlotCounter>> PassLoop::NewCounter() {
+absl::StatusOr<std::unique_ptr<SlotCounter>> PassLoop::NewCounter(const char* purpose) {
   CounterOptions options;
   options.rules = slot_rules_;
   options.types_now = results_.types.size();
@@ -209,7 +209,8 @@ absl::StatusOr<std::unique_ptr<SlotCounter>> PassLoop::NewCounter() {
   options.lanes = lanes_.lanes();
   options.on_disk = plan_.on_disk;
   options.working_bytes = plan_.working_bytes;
-  options.scratch_folder = scratch_folder_;
+  options.scratch_folder = absl::StrCat(scratch_folder_, "/", purpose);
+  PW_RETURN_IF_ERROR(files_.MakeDirectories(options.scratch_folder));
   options.files = &files_;
   return SlotCounter::Create(options);
 }
@@ -308,13 +309,13 @@ absl::StatusOr<bool> PassLoop::RunPass(const PassOptions& options, bool is_last)
   record.types_in = types_;
   BeginStage("count");
   if (counter_ == nullptr) {
-    PW_ASSIGN_OR_RETURN(counter_, NewCounter());
+    PW_ASSIGN_OR_RETURN(counter_, NewCounter("counts"));
     PW_RETURN_IF_ERROR(CountAll(counter_.get()));
   } else {
     PW_RETURN_IF_ERROR(counter_->Update(lanes_));
   }
   if (job_.debug.recount) {
-    PW_ASSIGN_OR_RETURN(std::unique_ptr<SlotCounter> fresh, NewCounter());
+    PW_ASSIGN_OR_RETURN(std::unique_ptr<SlotCounter> fresh, NewCounter("recount"));
     PW_RETURN_IF_ERROR(CountAll(fresh.get()));
     PW_RETURN_IF_ERROR(CompareCounts(number_, lanes_, counter_.get(), fresh.get()));
   }

@@ -17,7 +17,7 @@ constexpr size_t kLongestLine = 72;       // columns of a paragraph
 constexpr size_t kLongestSentence = 34 * 5 * (WordSource::kLongest + 8);
 
 // Parts in 256 of the background words.
-constexpr uint64_t kFollowers = 160;  // a word drawn by the word before it
+constexpr uint64_t kFollowers = 208;  // a word drawn by the word before it
 constexpr uint64_t kCommas = 16;
 constexpr uint64_t kDashes = 1;
 constexpr uint64_t kHyphens = 1;

@@ -28,7 +28,7 @@ constexpr double kFirstTailRank = 65536;
 constexpr uint64_t kLastRank = uint64_t{1} << 48;  // beyond any text; keeps the arithmetic in range
 
 // The exponent of how much a word prefers its favourite followers.
-constexpr double kFavouriteExponent = 0.7;
+constexpr double kFavouriteExponent = 0.8;
 constexpr size_t kFavouriteSteps = 4096;
 
 constexpr std::string_view kConsonants = "bdfghjklmnprstvz";

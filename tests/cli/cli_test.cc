@@ -171,6 +171,11 @@ TEST_F(CommandLine, WrongUseIsToldWithTheNearestRightOne) {
       {{"run", "--fersh"},
        "phraseweld run: unknown option '--fersh'; did you mean '--fresh'?\n"
        "'phraseweld run -h' shows how to use it.\n"},
+      {{"run", "-fersh", "job.yaml"},
+       "phraseweld run: unknown option '-fersh'; did you mean '--fresh'?\n"
+       "'phraseweld run -h' shows how to use it.\n"},
+      {{"run", "job.yaml", "-o", "x"},
+       "phraseweld run: unknown option '-o'\n'phraseweld run -h' shows how to use it.\n"},
       {{"restore", "f", "--outptu=g"},
        "phraseweld restore: unknown option '--outptu'; did you mean '--output'?\n"
        "'phraseweld restore -h' shows how to use it.\n"},
@@ -285,7 +290,8 @@ TEST_F(CommandLine, EveryExampleIsACommandLineThatWorks) {
     const std::string help = out_;
     const size_t start = help.find("Example:\n  phraseweld ") + 22;
     std::vector<std::string> words;
-    for (std::string_view word : Split(help.substr(start, help.find('\n', start) - start), ' ')) {
+    const std::string line = help.substr(start, help.find('\n', start) - start);
+    for (std::string_view word : Split(line, ' ')) {
       if (word.starts_with('\'')) word = word.substr(1, word.size() - 2);  // as a shell does
       words.emplace_back(word);
     }

@@ -95,6 +95,8 @@ await test('hostile texts stay texts', async (page) => {
         (want) => document.querySelector('#phrases .open-row').textContent === want, text);
     assert.equal(await row.locator('.open-row bdi *:not(span)').count(), 0);
     await row.locator('.open-row').click();
+    assert.equal(
+        await row.locator('.weld').getAttribute('dir'), part === 'רוח' ? 'rtl' : 'ltr', part);
     assert.ok((await row.locator('.detail').textContent()).includes(text.split(' ')[0]));
     await rule(page, row.locator('[data-role="rule"]'), 'never', `</script> ${part}`);
   }

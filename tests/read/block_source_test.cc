@@ -92,7 +92,7 @@ TEST_F(BlockSourceTest, BlocksDoNotDependOnTheSizesOfReads) {
 
 TEST_F(BlockSourceTest, ALongLineOfWordsRunsInAFewBlockSizes) {
   constexpr size_t kBlock = size_t{64} << 10;
-  const std::string line = Words(20'000'000, 1'000'000'000);
+  const std::string line = Words(6'000'000, 1'000'000'000);
   const std::string path = folder_.Put("long", line);
   for (const ReadLayout layout : {ReadLayout::kText, ReadLayout::kLines, ReadLayout::kParagraphs}) {
     const auto read = Read({path}, OptionsFor(layout, kBlock));

@@ -2,6 +2,7 @@
 #include <gtest/gtest.h>
 #include <simdjson.h>
 
+#include <optional>
 #include <random>
 
 #include "read/collect.h"
@@ -24,7 +25,10 @@ class JsonLinesTest : public testing::Test {
     options_.id = "id";
   }
   absl::StatusOr<Collected> TryRead(const std::string& bytes) {
-    return Collect({{.path = folder_.Put("in.jsonl", bytes), .relative = "in.jsonl"}}, options_);
+    // Written once for all the ways that it is read.
+    if (written_ != bytes) folder_.Put("in.jsonl", bytes);
+    written_ = bytes;
+    return Collect({{.path = folder_.Path("in.jsonl"), .relative = "in.jsonl"}}, options_);
   }
   std::vector<Document> Read(const std::string& bytes) {
     const auto read = TryRead(bytes);
@@ -46,6 +50,7 @@ class JsonLinesTest : public testing::Test {
   }
   TempFolder folder_;
   ReadOptions options_;
+  std::optional<std::string> written_;
 };
 
 TEST_F(JsonLinesTest, FieldsArePassagesInTheOrderAskedFor) {
@@ -254,7 +259,7 @@ TEST_F(JsonLinesTest, RandomObjectsReadAsSimdjsonHasThem) {
     }
   };
   simdjson::dom::parser parser;
-  for (int round = 0; round < 200; ++round) {
+  for (int round = 0; round < 100; ++round) {
     std::string lines;
     std::vector<Document> expected;
     for (int line = 0; line < 10; ++line) {

@@ -21,13 +21,13 @@ double PoissonTail(double n, double mean) {
 
 // O·ln(O/E). 0·ln 0 = 0; a cell in which O or E is not above 0, as can happen with the margins of
 // words, has no logarithm and adds nothing.
-double G2Cell(double o, double e) { return o > 0 && e > 0 ? o * std::log(o / e) : 0; }
+long double G2Cell(long double o, long double e) { return o > 0 && e > 0 ? o * std::log(o / e) : 0; }
 
 // (O−E)²/E. A cell in which nothing is expected adds nothing.
-double Chi2Cell(double o, double e) { return e > 0 ? (o - e) * (o - e) / e : 0; }
+long double Chi2Cell(long double o, long double e) { return e > 0 ? (o - e) * (o - e) / e : 0; }
 
 // A quotient that is 0 where the denominator is.
-double QuotientOrZero(double a, double b) { return b == 0 ? 0 : a / b; }
+long double QuotientOrZero(long double a, long double b) { return b == 0 ? 0 : a / b; }
 
 }  // namespace
 
@@ -57,45 +57,49 @@ double PoissonLowerLimit(uint64_t n) {
 
 // Section 5, the table.
 std::map<Quantity, double> Measure(const Counts& counts) {
-  const double n = static_cast<double>(counts.n);
-  const double L = static_cast<double>(counts.L);
-  const double R = static_cast<double>(counts.R);
-  const double N = static_cast<double>(counts.N);
-  const double M = static_cast<double>(counts.M);
-  const double documents = static_cast<double>(counts.documents);
+  const long double n = static_cast<long double>(counts.n);
+  const long double L = static_cast<long double>(counts.L);
+  const long double R = static_cast<long double>(counts.R);
+  const long double N = static_cast<long double>(counts.N);
+  const long double M = static_cast<long double>(counts.M);
+  const long double documents = static_cast<long double>(counts.documents);
 
-  const double O11 = n;
-  const double O12 = L - n;
-  const double O21 = R - n;
-  const double O22 = N - L - R + n;
-  const double E = Expected(counts);
-  const double E11 = E;
-  const double E12 = L * (N - R) / N;
-  const double E21 = (N - L) * R / N;
-  const double E22 = (N - L) * (N - R) / N;
+  const long double O11 = n;
+  const long double O12 = L - n;
+  const long double O21 = R - n;
+  const long double O22 = N - L - R + n;
+  const long double E = L * R / N;
+  const long double E11 = E;
+  const long double E12 = L * (N - R) / N;
+  const long double E21 = (N - L) * R / N;
+  const long double E22 = (N - L) * (N - R) / N;
 
-  const double pmi = std::log2(n / E);
-  double g2 = 2 * (G2Cell(O11, E11) + G2Cell(O12, E12) + G2Cell(O21, E21) + G2Cell(O22, E22));
-  if (n < E) g2 = -g2;
+  const long double pmi = std::log2(n / E);
+  long double g2 = 2 * (G2Cell(O11, E11) + G2Cell(O12, E12) + G2Cell(O21, E21) + G2Cell(O22, E22));
+  if (n < E) g2 = -std::abs(g2);
 
-  std::map<Quantity, double> values;
-  values[Quantity::kPmi] = pmi;
-  values[Quantity::kNpmi] = n == N ? 1 : pmi / -std::log2(n / N);
-  values[Quantity::kPmi2] = pmi + 1 * std::log2(n / M);
-  values[Quantity::kPmi3] = pmi + 2 * std::log2(n / M);
-  values[Quantity::kPmiFloor] = std::log2(PoissonLowerLimit(counts.n) / E);
-  values[Quantity::kG2] = g2;
-  values[Quantity::kChi2] =
+  std::map<Quantity, long double> scores;
+  scores[Quantity::kPmi] = pmi;
+  scores[Quantity::kNpmi] = n == N ? 1 : pmi / -std::log2(n / N);
+  scores[Quantity::kPmi2] = pmi + 1 * std::log2(n / M);
+  scores[Quantity::kPmi3] = pmi + 2 * std::log2(n / M);
+  scores[Quantity::kPmiFloor] = std::log2(PoissonLowerLimit(counts.n) / E);
+  scores[Quantity::kG2] = g2;
+  scores[Quantity::kChi2] =
       Chi2Cell(O11, E11) + Chi2Cell(O12, E12) + Chi2Cell(O21, E21) + Chi2Cell(O22, E22);
-  values[Quantity::kT] = (n - E) / std::sqrt(n);
-  values[Quantity::kDice] = 2 * n / (L + R);
-  values[Quantity::kDpForward] = QuotientOrZero(n, L) - QuotientOrZero(O21, N - L);
-  values[Quantity::kDpBackward] = QuotientOrZero(n, R) - QuotientOrZero(O12, N - R);
-  values[Quantity::kBurst] = n / documents;
-  for (auto& [quantity, value] : values) value = RoundToNineDecimals(value);
+  scores[Quantity::kT] = (n - E) / std::sqrt(n);
+  scores[Quantity::kDice] = 2 * n / (L + R);
+  scores[Quantity::kDpForward] = QuotientOrZero(n, L) - QuotientOrZero(O21, N - L);
+  scores[Quantity::kDpBackward] = QuotientOrZero(n, R) - QuotientOrZero(O12, N - R);
+  scores[Quantity::kBurst] = n / documents;
+  // Scores come from a wider type than the program's, so that its last bits decide no rounding here.
+  std::map<Quantity, double> values;
+  for (const auto& [quantity, value] : scores) {
+    values[quantity] = RoundToNineDecimals(static_cast<double>(value));
+  }
 
-  values[Quantity::kOccurrences] = n;
-  values[Quantity::kDocuments] = documents;
+  values[Quantity::kOccurrences] = static_cast<double>(n);
+  values[Quantity::kDocuments] = static_cast<double>(documents);
   return values;
 }
 

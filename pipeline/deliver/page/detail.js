@@ -67,7 +67,8 @@ class Detail {
       const bridge = data.strings[data.merges.bridge[merge]];
       const sides = [data.merges.left[merge], data.merges.right[merge]];
       const plates =
-          el('span', {class: sewn ? 'weld' : 'weld open'},
+          el('span',
+             {class: sewn ? 'weld' : 'weld open', dir: directionOf(this.model.sideText(sides[0]))},
              el('bdi', {class: 'side'}, this.model.sideText(sides[0])),
              el('span', {class: 'bead'}, ' '),
              bridge === '' ?

@@ -100,6 +100,13 @@ function headRow(titles, silent, numbers) {
                                                    title))));
 }
 
+// "rtl" for a text whose first letter is of a right-to-left script, else "ltr"; for rows of boxes,
+// where the browser's own dir="auto" looks past isolated text.
+function directionOf(text) {
+  const letter = text.match(/\p{L}/u);
+  return letter && /[\u0590-\u08ff\ufb1d-\ufdff\ufe70-\ufefc]/.test(letter[0]) ? 'rtl' : 'ltr';
+}
+
 // Runs `work` once, after the events at hand.
 function soon(work) {
   let waiting = false;
