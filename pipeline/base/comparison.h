@@ -113,7 +113,7 @@ struct RunComparison {
   bool input_order_differs = false;     // the same inputs in another order
   std::vector<OneSidedPhrase> gained;   // in the order of the inventory
   std::vector<OneSidedPhrase> lost;
-  std::vector<KeptPhrase> kept;  // by how much occurrences changed, largest first, then text
+  std::vector<KeptPhrase> kept;  // by how much occurrences and then ranks changed, then text
   uint64_t kept_changed = 0;
   std::vector<OrderAgreement> agreements;
 };

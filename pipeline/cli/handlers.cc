@@ -1,5 +1,8 @@
 #include "cli/commands.h"
+#include "cli/handle_compare.h"
+#include "cli/handle_grade.h"
 #include "cli/handle_run.h"
+#include "cli/handle_verify.h"
 
 namespace phraseweld {
 
@@ -7,7 +10,10 @@ Handlers ProgramHandlers() {
   Handlers handlers;
   handlers.run = HandleRun;
   handlers.check = HandleCheck;
+  handlers.verify = HandleVerify;
   handlers.restore = HandleRestore;
+  handlers.grade = HandleGrade;
+  handlers.compare = HandleCompare;
   return handlers;
 }
 

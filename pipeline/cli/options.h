@@ -11,18 +11,20 @@
 
 namespace phraseweld {
 
-// Arguments and options of the kinds that commands are made of. None of them takes more words of
-// the command line than one at a time, and none splits "[a,b]", as the parser would by itself.
+// Arguments and options of the kinds that commands are made of. Where nothing else is said, each
+// takes one word of the command line as it is; by itself the parser would split "[a,b]", and a
+// list would take all the words that follow.
 
 inline void AddArgument(CLI::App& app, const std::string& name, std::string& target,
                         const std::string& meaning) {
   app.add_option(name, target, meaning)->required()->allow_extra_args(false);
 }
 
-// One argument or more.
+// One argument or more. The parser splits "[a,b]" here, which words of a phrase can bear: brackets
+// are no part of a word.
 inline void AddArguments(CLI::App& app, const std::string& name, std::vector<std::string>& target,
                          const std::string& meaning) {
-  app.add_option(name, target, meaning)->required()->allow_extra_args(false);
+  app.add_option(name, target, meaning)->required()->allow_extra_args(true);
 }
 
 inline void AddOption(CLI::App& app, const std::string& names, const std::string& value,

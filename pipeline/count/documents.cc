@@ -14,20 +14,23 @@ constexpr uint64_t kReleaseEvery = uint64_t{1} << 19;
 // What one part of the stream says of each item. The documents of a part are numbered from 1; the
 // first may have begun in an earlier part and the last may go on in the next.
 struct PartCounts {
-  explicit PartCounts(size_t items)
-      : documents(items, 0), last_document(items, 0), first(items, kNowhere) {}
+  struct Item {
+    uint64_t first = kNowhere;
+    uint32_t documents = 0;
+    uint32_t last_document = 0;
+  };
+  explicit PartCounts(size_t size) : items(size) {}
 
-  void See(size_t item, uint64_t at) {
-    if (last_document[item] == document) return;
-    if (last_document[item] == 0) first[item] = at;
-    last_document[item] = document;
-    ++documents[item];
+  void See(size_t number, uint64_t at) {
+    Item& item = items[number];
+    if (item.last_document == document) return;
+    if (item.last_document == 0) item.first = at;
+    item.last_document = document;
+    ++item.documents;
   }
 
-  std::vector<uint32_t> documents;
-  std::vector<uint32_t> last_document;
-  std::vector<uint64_t> first;
-  uint32_t document = 1;        // the current one, in the end the last
+  std::vector<Item> items;
+  uint32_t document = 1;          // the current one, in the end the last
   uint64_t first_end = kNowhere;  // where the part's first document ends
   bool ends_inside = false;
 };
@@ -39,11 +42,12 @@ SlotPlaces Combine(const std::vector<PartCounts>& parts, size_t items) {
   bool goes_on = false;
   for (const PartCounts& part : parts) {
     for (size_t i = 0; i < items; ++i) {
-      const bool in_first = part.documents[i] > 0 && part.first[i] < part.first_end;
-      places.documents[i] += part.documents[i];
+      const PartCounts::Item& item = part.items[i];
+      const bool in_first = item.documents > 0 && item.first < part.first_end;
+      places.documents[i] += item.documents;
       if (goes_on && open[i] && in_first) --places.documents[i];
-      if (places.first[i] == kNowhere) places.first[i] = part.first[i];
-      const bool in_last = part.documents[i] > 0 && part.last_document[i] == part.document;
+      if (places.first[i] == kNowhere) places.first[i] = item.first;
+      const bool in_last = item.documents > 0 && item.last_document == part.document;
       if (!part.ends_inside) {
         open[i] = false;
       } else if (part.first_end == kNowhere) {

@@ -1,6 +1,7 @@
 #include "count/slot_counter.h"
 
 #include <algorithm>
+#include <atomic>
 #include <bit>
 #include <utility>
 
@@ -109,7 +110,8 @@ class SlotStore final : public SlotCounter {
     }
   }
 
-  absl::Status Update(Lanes& lanes) override {
+  absl::Status Update(Lanes& lanes, uint32_t types) override {
+    right_of_empty_.resize(types, 0);
     lane_state_.assign(lanes_, LaneState{});
     PW_RETURN_IF_ERROR(lanes.ForEach(tables_.partitions(), [this](int lane, size_t partition) {
       return UpdatePartition(lane, partition);
@@ -118,18 +120,18 @@ class SlotStore final : public SlotCounter {
     spooled_ = std::max(spooled_, added_->stored_bytes() + removed_->stored_bytes());
     added_->Rewind();
     removed_->Rewind();
-    uint64_t types = 0;
+    uint64_t distinct = 0;
     int64_t slots = 0;
     for (LaneState& state : lane_state_) {
       slots += state.slots;
-      types += state.types;
+      distinct += state.types;
       for (const auto& [bridge, change] : state.bridges) {
         bridge_total_[bridge] += static_cast<uint64_t>(change);
       }
       state = LaneState{};
     }
     slots_ += static_cast<uint64_t>(slots);
-    slot_types_ = types;
+    slot_types_ = distinct;
     PW_RETURN_IF_ERROR(lanes.ForEach(tables_.partitions(), [this](int, size_t partition) {
       return UpdateMargins(partition);
     }));
@@ -192,6 +194,16 @@ class SlotStore final : public SlotCounter {
   size_t MarginPartitionOf(Key bridge_and_right) const {
     return PartitionOf(static_cast<uint64_t>(bridge_and_right) ^
                        static_cast<uint64_t>(bridge_and_right >> (sizeof(Key) * 4)) * 31);
+  }
+
+  SlotTable TableOf(const Slot& slot, uint64_t n, uint64_t left, uint64_t right) const {
+    SlotTable table;
+    table.n = n;
+    table.left = left;
+    table.right = right;
+    table.total = bridge_total_.at(slot.bridge);
+    table.all = slots_;
+    return table;
   }
 
   // Keys of a spool's partition as sorted changes, slice by slice so that no slice is larger than
@@ -261,6 +273,11 @@ class SlotStore final : public SlotCounter {
         const Delta<Key>& delta = deltas[i];
         if (delta.change == 0) continue;
         sum += delta.change;
+        if (bridge == 0) {
+          std::atomic_ref<uint64_t>(right_of_empty_[packing_.Unpack(delta.key).right])
+              .fetch_add(static_cast<uint64_t>(delta.change), std::memory_order_relaxed);
+          continue;
+        }
         const Key right = packing_.BridgeAndRight(delta.key);
         right_changes_->Append(lane, MarginPartitionOf(right), {right, delta.change});
       }
@@ -308,8 +325,6 @@ class SlotStore final : public SlotCounter {
 
   absl::Status VisitPartition(int lane, size_t partition, uint64_t least, const Visitor& visit,
                               std::vector<Candidate>* waiting) const {
-    (void)visit;
-    (void)lane;
     typename CountTables<Key, uint32_t>::Table buffer;
     PW_ASSIGN_OR_RETURN(const auto* table, tables_.Load(partition, &buffer));
     const std::vector<Key>& keys = table->keys;
@@ -326,6 +341,11 @@ class SlotStore final : public SlotCounter {
       if (largest >= least) {
         for (; i < end; ++i) {
           if (counts[i] < least) continue;
+          const Slot slot = packing_.Unpack(keys[i]);
+          if (slot.bridge == 0) {
+            visit(lane, slot, TableOf(slot, counts[i], left, right_of_empty_[slot.right]));
+            continue;
+          }
           waiting[MarginPartitionOf(packing_.BridgeAndRight(keys[i]))].push_back(
               {keys[i], counts[i], left});
         }
@@ -352,13 +372,9 @@ class SlotStore final : public SlotCounter {
           return absl::InternalError("a slot type has no right margin");
         }
         const Slot slot = packing_.Unpack(candidate.key);
-        SlotTable counts;
-        counts.n = candidate.n;
-        counts.left = candidate.left;
-        counts.right = table->counts[static_cast<size_t>(found - table->keys.begin())];
-        counts.total = bridge_total_.at(slot.bridge);
-        counts.all = slots_;
-        visit(lane, slot, counts);
+        visit(lane, slot,
+              TableOf(slot, candidate.n, candidate.left,
+                      table->counts[static_cast<size_t>(found - table->keys.begin())]));
       }
       list.clear();
       list.shrink_to_fit();
@@ -377,6 +393,7 @@ class SlotStore final : public SlotCounter {
   std::vector<std::vector<Delta<Key>>> bulk_;
   CountTables<Key, uint32_t> tables_;
   CountTables<Key, uint64_t> right_tables_;
+  std::vector<uint64_t> right_of_empty_;  // R of the empty bridge, by type
   absl::flat_hash_map<uint64_t, uint64_t> bridge_total_;
   std::vector<LaneState> lane_state_;
   uint64_t slots_ = 0, slot_types_ = 0, spooled_ = 0;

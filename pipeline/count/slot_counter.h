@@ -47,8 +47,9 @@ class SlotCounter {
   virtual void Change(int lane, const Slot& before, const Slot& after) = 0;
   virtual void Remove(int lane, const Slot& slot, uint64_t times) = 0;
 
-  // Applies the reports. OutOfRange when one slot type has more than 2^32-1 slots.
-  virtual absl::Status Update(Lanes& lanes) = 0;
+  // Applies the reports. `types`: ids in use are below it. OutOfRange when one slot type has more
+  // than 2^32-1 slots.
+  virtual absl::Status Update(Lanes& lanes, uint32_t types) = 0;
 
   // As of the last Update().
   virtual uint64_t slots() const = 0;

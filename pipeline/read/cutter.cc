@@ -81,8 +81,7 @@ size_t Cutter::PassageBegin(std::string_view bytes, size_t cut, bool* earlier) c
   if (layout_ == ReadLayout::kText) return 0;
   size_t begin = AfterLastLineFeed(bytes, cut);
   if (layout_ == ReadLayout::kParagraphs) {
-    // Line by line back to a blank one. The cut may be at a line's end: that line is the first.
-    if (begin == cut) begin = AfterLastLineFeed(bytes, cut - 1);
+    // Line by line back to a blank one.
     while (begin > 0) {
       const size_t line = AfterLastLineFeed(bytes, begin - 1);
       if (IsBlank(bytes.substr(line, begin - 1 - line))) break;

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <map>
+#include <memory>
 #include <optional>
 #include <string_view>
 #include <utility>
@@ -10,6 +11,8 @@
 #include "base/status.h"
 #include "base/strings.h"
 #include "config/job_file.h"
+#include "deliver/compare_page.h"
+#include "files/streams.h"
 #include "run/absence.h"
 #include "score/rank_correlation.h"
 
@@ -189,6 +192,9 @@ RunComparison CompareFinishedRuns(const FinishedRun& left, const FinishedRun& ri
                      const uint64_t by_b = Distance(b.left.made(), b.right.made());
                      if (by_a != by_b) return by_a > by_b;
                      if (a.changed != b.changed) return a.changed;
+                     const uint64_t rank_a = Distance(a.left.rank, a.right.rank);
+                     const uint64_t rank_b = Distance(b.left.rank, b.right.rank);
+                     if (rank_a != rank_b) return rank_a > rank_b;
                      return a.left.phrase < b.left.phrase;
                    });
   return comparison;
@@ -199,6 +205,14 @@ absl::StatusOr<RunComparison> CompareRuns(FileSystem& files, const std::string& 
   PW_ASSIGN_OR_RETURN(const FinishedRun of_left, LoadFinishedRun(files, left));
   PW_ASSIGN_OR_RETURN(const FinishedRun of_right, LoadFinishedRun(files, right));
   return CompareFinishedRuns(of_left, of_right);
+}
+
+absl::Status WriteComparisonPage(FileSystem& files, const RunComparison& comparison,
+                                 const std::string& path) {
+  PW_ASSIGN_OR_RETURN(const std::unique_ptr<OutputStream> out,
+                      OutputStream::Create(files, path, false));
+  PW_RETURN_IF_ERROR(out->Append(RenderComparePage(comparison)));
+  return out->Finish().status();
 }
 
 }  // namespace phraseweld

@@ -24,6 +24,10 @@ std::string ComparisonText(const RunComparison& comparison, size_t most);
 // One JSON object with everything, ended by a line feed.
 std::string ComparisonJson(const RunComparison& comparison);
 
+// The page of deliver/compare_page.h, written to `path`.
+absl::Status WriteComparisonPage(FileSystem& files, const RunComparison& comparison,
+                                 const std::string& path);
+
 }  // namespace phraseweld
 
 #endif  // PHRASEWELD_RUN_COMPARE_H_

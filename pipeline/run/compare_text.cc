@@ -52,7 +52,10 @@ void AppendKept(std::string* text, const RunComparison& comparison, size_t most)
     ++rows;
     std::string pmi;
     const auto left = kept.left.Score(Quantity::kPmi), right = kept.right.Score(Quantity::kPmi);
-    if (left && right) pmi = absl::StrFormat("%+.2f", *right - *left);
+    // Two decimals of a difference that they do not show would be a zero with a sign.
+    if (left && right && std::abs(*right - *left) >= 0.005) {
+      pmi = absl::StrFormat("%+.2f", *right - *left);
+    }
     table.Add({kept.left.phrase, Arrow(kept.left.made(), kept.right.made()),
                Arrow(kept.left.documents, kept.right.documents),
                Arrow(static_cast<uint64_t>(kept.left.pass), static_cast<uint64_t>(kept.right.pass)),

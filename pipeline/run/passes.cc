@@ -219,7 +219,7 @@ absl::Status PassLoop::CountAll(SlotCounter* counter) {
   PW_RETURN_IF_ERROR(ForChunks([&](int lane, uint64_t begin, uint64_t end) {
     counter->AddAll(lane, corpus_.stream.entries, begin, end);
   }));
-  return counter->Update(lanes_);
+  return counter->Update(lanes_, results_.types.size());
 }
 
 absl::Status PassLoop::FillDocuments(std::vector<Candidate>* pending) {
@@ -312,7 +312,7 @@ absl::StatusOr<bool> PassLoop::RunPass(const PassOptions& options, bool is_last)
     PW_ASSIGN_OR_RETURN(counter_, NewCounter("counts"));
     PW_RETURN_IF_ERROR(CountAll(counter_.get()));
   } else {
-    PW_RETURN_IF_ERROR(counter_->Update(lanes_));
+    PW_RETURN_IF_ERROR(counter_->Update(lanes_, results_.types.size()));
   }
   if (job_.debug.recount) {
     PW_ASSIGN_OR_RETURN(std::unique_ptr<SlotCounter> fresh, NewCounter("recount"));

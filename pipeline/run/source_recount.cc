@@ -173,7 +173,7 @@ absl::StatusOr<std::unique_ptr<SlotCounter>> SourceRecount::NewCounter(const Slo
     stream.release(stream.cuts[i], stream.cuts[i + 1]);
     return absl::OkStatus();
   }));
-  PW_RETURN_IF_ERROR(counter->Update(lanes_));
+  PW_RETURN_IF_ERROR(counter->Update(lanes_, std::max(corpus_->vocabulary.size(), results_.types.size())));
   return counter;
 }
 

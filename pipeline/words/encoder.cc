@@ -13,8 +13,7 @@ namespace {
 constexpr std::array<bool, 256> kClosesGap = [] {
   std::array<bool, 256> closes{};
   for (int byte = 0; byte < 0x80; ++byte) {
-    closes[static_cast<size_t>(byte)] =
-        byte != ' ' && byte != '\n' && byte != '\r' && byte != '-';
+    closes[static_cast<size_t>(byte)] = byte != ' ' && byte != '\n' && byte != '\r' && byte != '-';
   }
   return closes;
 }();
@@ -78,7 +77,8 @@ class Encoder::Impl {
     // The commonest gaps need no branch that the processor must guess.
     const bool open = (size == 0) | ((size == 1) & ((first == ' ') | (first == '\n')));
     const bool closed = kClosesGap[static_cast<unsigned char>(first)] & !open;
-    if (open | closed) [[likely]] return closed;
+    if (open | closed) [[likely]]
+      return closed;
     return !GapIsOpen(text.substr(last_end, size), options_.join_hyphens);
   }
 

@@ -27,8 +27,8 @@ std::string Normalize(Normalizer instance, std::string_view text) {
   Require(error);
   std::string out;
   icu::StringByteSink<std::string> sink(&out, static_cast<int32_t>(text.size()));
-  normalizer->normalizeUTF8(
-      0, icu::StringPiece(text.data(), static_cast<int32_t>(text.size())), sink, nullptr, error);
+  normalizer->normalizeUTF8(0, icu::StringPiece(text.data(), static_cast<int32_t>(text.size())),
+                            sink, nullptr, error);
   Require(error);
   return out;
 }

@@ -47,9 +47,8 @@ std::string_view FormShard::form(uint32_t index) const {
 }
 
 uint64_t FormShard::memory() const {
-  return slots_.capacity() * sizeof(Slot) +
-         records_.size() * kChunk * sizeof(Record) + arena_bytes_ +
-         (records_.capacity() + arena_.capacity()) * sizeof(void*);
+  return slots_.capacity() * sizeof(Slot) + records_.size() * kChunk * sizeof(Record) +
+         arena_bytes_ + (records_.capacity() + arena_.capacity()) * sizeof(void*);
 }
 
 uint32_t FormShard::Store(std::string_view form) {

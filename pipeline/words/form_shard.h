@@ -19,8 +19,8 @@ class FormShard {
   // Holds at most `most_forms` forms and 4 GiB of their bytes.
   explicit FormShard(uint32_t most_forms) : most_forms_(most_forms) {}
 
-  // The index of `form`, whose hash is `hash`; added, never seen yet, where it is new. Indexes count
-  // from 0 in the order of adding. kNone where the form is new and the shard full.
+  // The index of `form`, whose hash is `hash`; added, never seen yet, where it is new. Indexes
+  // count from 0 in the order of adding. kNone where the form is new and the shard full.
   uint32_t Add(std::string_view form, uint64_t hash);
   // The index of `form`, or kNone.
   uint32_t Find(std::string_view form, uint64_t hash) const;

@@ -30,12 +30,11 @@ IcuSegmenter::IcuSegmenter() {
   // that several scripts share (U+30FC) otherwise than afterwards. One word of Thai, Lao, Khmer,
   // Burmese, Han and Hangul each loads them all, so that words do not depend on what came before.
   std::vector<WordSpan> words;
-  AppendWords(
-      "\u0e01\u0e01 \u0e81\u0e81 \u1780\u1780 \u1000\u1000 \u4e00\u4e00 \uac00\uac00", 0, &words);
+  AppendWords("\u0e01\u0e01 \u0e81\u0e81 \u1780\u1780 \u1000\u1000 \u4e00\u4e00 \uac00\uac00", 0,
+              &words);
 }
 
-void IcuSegmenter::AppendWords(std::string_view text, uint32_t base,
-                               std::vector<WordSpan>* words) {
+void IcuSegmenter::AppendWords(std::string_view text, uint32_t base, std::vector<WordSpan>* words) {
   const auto length = static_cast<int32_t>(text.size());
   units_.resize(text.size());
   offsets_.resize(text.size() + 1);

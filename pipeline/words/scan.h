@@ -8,9 +8,9 @@
 
 namespace phraseweld {
 
-// The scanner of the fast path. The simple idea: classify 64 bytes at once into bit masks; a word is
-// a run of letters, digits and underscores, so its ends are where a mask changes. What complicates
-// it, and what each costs:
+// The scanner of the fast path. The simple idea: classify 64 bytes at once into bit masks; a word
+// is a run of letters, digits and underscores, so its ends are where a mask changes. What
+// complicates it, and what each costs:
 //  - ' and . join two letters or two digits, and , and ; two digits; a lone underscore is no word.
 //    All of that is mask arithmetic with one neighbour on each side.
 //  - Letters of two bytes from U+00C0 to U+02AF and U+0400 to U+047F (but U+00D7 and U+00F7) are
@@ -22,11 +22,11 @@ namespace phraseweld {
 
 // What a scan leaves for the next block.
 struct ScanCarry {
-  uint64_t word = 0;       // 0 or 1: whether the byte before the block is a letter, digit or "_",
-  uint64_t letter = 0;     // is (the end of) a letter,
-  uint64_t digit = 0;      // is a digit,
-  uint64_t underscore = 0; // is an underscore,
-  uint64_t lead = 0;       // begins a letter of two bytes that the block goes on with;
+  uint64_t word = 0;        // 0 or 1: whether the byte before the block is a letter, digit or "_",
+  uint64_t letter = 0;      // is (the end of) a letter,
+  uint64_t digit = 0;       // is a digit,
+  uint64_t underscore = 0;  // is an underscore,
+  uint64_t lead = 0;        // begins a letter of two bytes that the block goes on with;
   uint64_t digit_before = 0;  // whether the byte before that one is a digit.
 };
 
@@ -38,7 +38,7 @@ struct Scan {
   uint32_t at = 0;  // where the next block starts
   // A boundary at or before `at`: all words before it are final.
   uint32_t resume = 0;
-  bool open = false;  // whether a word runs up to `at`,
+  bool open = false;        // whether a word runs up to `at`,
   uint32_t open_begin = 0;  // and where it began
   ScanCarry carry;
   // Words go to [out, limit); those from `first` on may still be taken back.
@@ -52,8 +52,8 @@ struct Scan {
 class HardText {
  public:
   // Appends the words of the segments from `begin` on to scan->out and returns the boundary where
-  // the scanner takes over again; it lies behind the byte at `hard`, and before ASCII unless room is
-  // short.
+  // the scanner takes over again; it lies behind the byte at `hard`, and before ASCII unless room
+  // is short.
   virtual uint32_t Resolve(uint32_t begin, uint32_t hard, Scan* scan) = 0;
 
  protected:

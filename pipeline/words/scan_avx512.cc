@@ -9,9 +9,8 @@
 
 // What follows may use AVX-512; what the headers above define may not, since other files share it.
 #if defined(__clang__)
-#pragma clang attribute push(                                                     \
-    __attribute__((target("avx2,avx512f,avx512bw,bmi,bmi2,popcnt,lzcnt"))), \
-    apply_to = function)
+#pragma clang attribute push( \
+    __attribute__((target("avx2,avx512f,avx512bw,bmi,bmi2,popcnt,lzcnt"))), apply_to = function)
 #else
 #pragma GCC push_options
 #pragma GCC target("avx2,avx512f,avx512bw,bmi,bmi2,popcnt,lzcnt")

@@ -13,9 +13,9 @@
 
 namespace phraseweld {
 
-// What a thread remembers of words that it met: the bytes of a word as they stand in the text -> the
-// provisional id of its form. So the common word is neither folded nor looked up in the vocabulary.
-// 1 MiB, for the second-level cache of a core. Not thread-safe.
+// What a thread remembers of words that it met: the bytes of a word as they stand in the text ->
+// the provisional id of its form. So the common word is neither folded nor looked up in the
+// vocabulary. Sized for the second-level cache of a core. Not thread-safe.
 
 // Words of at most 16 bytes, as two integers padded with zeros: no word ends in a zero byte.
 class ShortWordCache {
@@ -45,7 +45,8 @@ class ShortWordCache {
   uint32_t Find(Key key) {
     Line& line = lines_[LineOf(key)];
     // Seven of eight words of English stand in the first way.
-    if (line.Has(0, key)) [[likely]] return line.id[0];
+    if (line.Has(0, key)) [[likely]]
+      return line.id[0];
     for (size_t way = 1; way < kWays; ++way) {
       if (line.Has(way, key)) {
         line.Swap(way);
@@ -64,12 +65,12 @@ class ShortWordCache {
   }
 
  private:
-  static constexpr size_t kWays = 3;  // what a cache line of 64 bytes holds
-  static constexpr int kLineBits = 13;
+  static constexpr size_t kWays = 3;    // what a cache line of 64 bytes holds
+  static constexpr int kLineBits = 14;  // 1 MiB: 3.7 % misses on 46 MB of English, half that 4.8 %
 
-  // A new word takes the last way, and each time it is met again it moves one way forward: words met
-  // once never drive out a common one. (On English this misses a sixth less than first in, first
-  // out, and less than least recently used.)
+  // A new word takes the last way, and each time it is met again it moves one way forward: words
+  // met once never drive out a common one. (On English this misses a sixth less than first in,
+  // first out, and less than least recently used.)
   struct alignas(64) Line {
     uint64_t low[kWays] = {};
     uint64_t high[kWays] = {};
@@ -128,7 +129,7 @@ class LongWordCache {
   }
 
  private:
-  static constexpr int kLineBits = 13;
+  static constexpr int kLineBits = 12;  // 256 KiB: in English one word of a hundred is so long
 
   struct alignas(64) Line {
     uint32_t id = kBreak;

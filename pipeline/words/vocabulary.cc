@@ -57,9 +57,9 @@ class Vocabulary::Impl {
       largest_shard = std::max(largest_shard, shard.forms.size());
     }
     if (full_ || form_count > kMostTypes) {
-      return absl::ResourceExhaustedError(
-          absl::StrCat("the corpus has more distinct words than a run can number, which is at most ",
-                       kMostTypes, "; mine it in parts"));
+      return absl::ResourceExhaustedError(absl::StrCat(
+          "the corpus has more distinct words than a run can number, which is at most ", kMostTypes,
+          "; mine it in parts"));
     }
     std::vector<uint32_t> finals(size_t{largest_shard} << kShardBits, kBreak);
     order_.reserve(form_count);

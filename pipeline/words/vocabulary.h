@@ -50,8 +50,7 @@ class Vocabulary {
 // words that it met, so that the common word costs two loads and a compare.
 class Encoder {
  public:
-  Encoder(const WordOptions& options, Vocabulary* vocabulary,
-          SplitPath path = SplitPath::kFast);
+  Encoder(const WordOptions& options, Vocabulary* vocabulary, SplitPath path = SplitPath::kFast);
   ~Encoder();
 
   // Appends the entries of `text`, a whole passage or a part of one that StartsWord() allowed to

@@ -17,11 +17,14 @@ constexpr size_t kLongestLine = 72;       // columns of a paragraph
 constexpr size_t kLongestSentence = 34 * 5 * (WordSource::kLongest + 8);
 
 // Parts in 256 of the background words.
-constexpr uint64_t kFollowers = 208;  // a word drawn by the word before it
-constexpr uint64_t kCommas = 16;
+constexpr uint64_t kFollowers = 224;  // a word drawn by the word before it
+constexpr uint64_t kArticles = 24;    // of those behind a function word: "the"
+constexpr uint64_t kCommas = 24;
 constexpr uint64_t kDashes = 1;
 constexpr uint64_t kHyphens = 1;
 constexpr uint64_t kNumbers = 2;
+
+constexpr uint64_t kThe = 1;  // its rank
 
 char* Append(std::string_view text, char* out) { return std::copy(text.begin(), text.end(), out); }
 
@@ -101,9 +104,15 @@ char* TextMaker::AppendBackgroundWord(uint64_t bits, char* out) {
     separated_ = true;
     return AppendNumber((bits >> 16) % 2000, out);
   }
-  const bool follows = previous_rank_ != 0 && bits >> 56 < kFollowers;
-  const uint64_t rank =
-      follows ? source_.FollowerRank(previous_rank_, random_.Next()) : source_.Rank(bits);
+  const uint64_t other_part = bits >> 56;
+  uint64_t rank;
+  if (previous_rank_ > kThe && source_.IsFunctionWord(previous_rank_) && other_part < kArticles) {
+    rank = kThe;
+  } else if (previous_rank_ != 0 && other_part < kFollowers) {
+    rank = source_.FollowerRank(previous_rank_, random_.Next());
+  } else {
+    rank = source_.Rank(bits);
+  }
   out = source_.Spell(rank, out);
   previous_rank_ = rank;
   if (source_.IsFunctionWord(rank)) return out;

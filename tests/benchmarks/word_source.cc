@@ -27,8 +27,10 @@ constexpr double kTailExponent = 1.9;  // gives 0.9 million words in 126 million
 constexpr double kFirstTailRank = 65536;
 constexpr uint64_t kLastRank = uint64_t{1} << 48;  // beyond any text; keeps the arithmetic in range
 
-// The exponent of how much a word prefers its favourite followers.
-constexpr double kFavouriteExponent = 0.8;
+// How much a word prefers its favourite followers: Zipf-Mandelbrot again, cut off where the steps
+// end.
+constexpr double kFavouriteExponent = 1.2;
+constexpr double kFavouriteShift = 6;
 constexpr size_t kFavouriteSteps = 4096;
 
 constexpr std::string_view kConsonants = "bdfghjklmnprstvz";
@@ -113,7 +115,8 @@ WordSource::WordSource()
   }
   for (size_t step = 1; step < kFavouriteSteps; ++step) {
     const double unit = static_cast<double>(step) / kFavouriteSteps;
-    favourites_[step] = static_cast<uint32_t>(std::pow(unit, -1 / kFavouriteExponent));
+    const double place = kFavouriteShift * (std::pow(unit, -1 / kFavouriteExponent) - 1);
+    favourites_[step] = 1 + static_cast<uint32_t>(place);
   }
 }
 

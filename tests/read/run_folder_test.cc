@@ -165,7 +165,7 @@ TEST(RunFolder, ManifestTellsInputsOutputsAndTotals) {
   EXPECT_EQ(manifest->job, "notes");
   ASSERT_THAT(manifest->inputs, SizeIs(2));
   EXPECT_EQ(manifest->inputs[0].name, "a/notes.txt");
-  EXPECT_EQ(manifest->inputs[0].path, folder.Path("source/a/notes.txt"));
+  EXPECT_EQ(manifest->inputs[0].path, folder.Path("run.source/a/notes.txt"));
   EXPECT_EQ(manifest->inputs[1].stored_bytes, kNotes[1].bytes.size());
   EXPECT_THAT(manifest->inputs[1].xxh3_128, SizeIs(32));
   EXPECT_EQ(manifest->outputs.front().path, "audit/pass-00.jsonl");

@@ -17,16 +17,16 @@
 
 namespace phraseweld {
 
-// Writes inputs below `folder`/source and, from what the reference makes of them, a run folder
-// `folder`/`name` without a job.yaml. Returns the run folder's path. `job.corpus.files` is not
-// looked at.
+// Writes inputs below `folder`/`name`.source and, from what the reference makes of them, a run
+// folder `folder`/`name` without a job.yaml. Returns the run folder's path. `job.corpus.files` is
+// not looked at.
 inline std::string PutSampleRun(const TempFolder& folder, const std::string& name, const Job& job,
                                 const std::vector<RefInput>& inputs) {
   std::string manifest = "{\"program\":\"phraseweld\",\"version\":\"0.1.0\",\"job\":";
   AppendJsonString(&manifest, job.job);
   manifest += ",\"inputs\":[";
   for (const RefInput& input : inputs) {
-    const std::string path = folder.Put(Concat("source/", input.name), input.bytes);
+    const std::string path = folder.Put(Concat(name, ".source/", input.name), input.bytes);
     const OutputDigest digest = *DigestFile(FileSystem::Posix(), path);
     if (manifest.back() != '[') manifest += ',';
     manifest += "{\"path\":";

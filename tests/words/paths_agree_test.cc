@@ -28,8 +28,8 @@ class Streams {
       const std::vector<WordSpan> words = WordsOf(stream.get(), text);
       if (words == expected) continue;
       if (text.size() < 300) {
-        return testing::AssertionFailure() << name << "\n  ICU  " << Show(text, expected)
-                                           << "\n  gave " << Show(text, words);
+        return testing::AssertionFailure()
+               << name << "\n  ICU  " << Show(text, expected) << "\n  gave " << Show(text, words);
       }
       // The line where the first difference is.
       size_t same = 0;
@@ -39,10 +39,10 @@ class Streams {
       const size_t at = same == 0 ? 0 : expected[same - 1].end;
       return testing::AssertionFailure()
              << name << " differs after byte " << at << " of " << text.size() << ", at "
-             << Show(text.substr(at, 80), {}) << "; ICU's next word: "
-             << (same < expected.size() ? expected[same].begin : 0) << "-"
-             << (same < expected.size() ? expected[same].end + 0 : 0) << " given: "
-             << (same < words.size() ? words[same].begin : 0) << "-"
+             << Show(text.substr(at, 80), {})
+             << "; ICU's next word: " << (same < expected.size() ? expected[same].begin : 0) << "-"
+             << (same < expected.size() ? expected[same].end + 0 : 0)
+             << " given: " << (same < words.size() ? words[same].begin : 0) << "-"
              << (same < words.size() ? words[same].end + 0 : 0);
     }
     return testing::AssertionSuccess();
@@ -77,9 +77,8 @@ void ForAllStrings(const std::vector<std::string>& pieces, int length, std::stri
 TEST(PathsAgree, OnEveryShortStringOfClassRepresentatives) {
   Streams streams;
   for (int length = 1; length <= 3; ++length) {
-    ForAllStrings(Representatives(), length, "\n", [&](const std::string& text) {
-      ASSERT_TRUE(streams.AllGiveWhatIcuGives(text));
-    });
+    ForAllStrings(Representatives(), length, "\n",
+                  [&](const std::string& text) { ASSERT_TRUE(streams.AllGiveWhatIcuGives(text)); });
   }
 }
 
@@ -96,9 +95,7 @@ TEST(PathsAgree, OnEveryTextOfAtMostTwoRepresentatives) {
 TEST(PathsAgree, OnEveryStringOfSixAsciiClasses) {
   Streams streams;
   ForAllStrings({"a", "1", "_", ".", ",", " ", "\xC3\xA9"}, 6, "\n",
-                [&](const std::string& text) {
-                  ASSERT_TRUE(streams.AllGiveWhatIcuGives(text));
-                });
+                [&](const std::string& text) { ASSERT_TRUE(streams.AllGiveWhatIcuGives(text)); });
 }
 
 TEST(PathsAgree, OnEveryStringOfFourMixedClasses) {
@@ -106,17 +103,14 @@ TEST(PathsAgree, OnEveryStringOfFourMixedClasses) {
   ForAllStrings({"a",      "1",      "_",      ".",      "'",      ",",      " ",      "\xFF",
                  "\u00E9", "\u0300", "\u200D", "\u05D0", "\"",     "\u30AB", "\u4E00", "\uAC00",
                  "\u0E01", "\u24C2", "\u2019", "\u115F", "\u0661", "\u03B1"},
-                4, "\n", [&](const std::string& text) {
-                  ASSERT_TRUE(streams.AllGiveWhatIcuGives(text));
-                });
+                4, "\n",
+                [&](const std::string& text) { ASSERT_TRUE(streams.AllGiveWhatIcuGives(text)); });
 }
 
 TEST(PathsAgree, OnEveryStringOfFiveHardClasses) {
   Streams streams;
-  ForAllStrings({"a", "1", "_", ".", " ", "\u0300", "\u200D", "\u05D0", "\u24C2", "\u03B1"}, 5,
-                "-", [&](const std::string& text) {
-                  ASSERT_TRUE(streams.AllGiveWhatIcuGives(text));
-                });
+  ForAllStrings({"a", "1", "_", ".", " ", "\u0300", "\u200D", "\u05D0", "\u24C2", "\u03B1"}, 5, "-",
+                [&](const std::string& text) { ASSERT_TRUE(streams.AllGiveWhatIcuGives(text)); });
 }
 
 TEST(PathsAgree, OnEveryCodePointInContext) {
@@ -187,9 +181,8 @@ TEST(PathsAgree, WhenAccentsAreStripped) {
   for (int length = 1; length <= 3; ++length) {
     ForAllStrings({"\u0300", "\u200D", "\u24C2", "\u115F", "\u302A", "\u1160", "\u3164", "\u00AD",
                    "\u034F", "a", " ", "\U00016FE4", "\u17B4", "\u0E31"},
-                  length, "\n", [&](const std::string& text) {
-                    ASSERT_TRUE(streams.AllGiveWhatIcuGives(text));
-                  });
+                  length, "\n",
+                  [&](const std::string& text) { ASSERT_TRUE(streams.AllGiveWhatIcuGives(text)); });
   }
 }
 

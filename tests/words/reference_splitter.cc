@@ -119,17 +119,17 @@ std::string Show(std::string_view text, const std::vector<WordSpan>& words) {
 
 const std::vector<std::string>& Representatives() {
   static const std::vector<std::string>& pieces = *new std::vector<std::string>{
-      "a",         "1",         "_",         ".",        "'",
-      ",",         " ",         "\n",        "-",        "\"",
-      ":",         "@",         "\u00E9",    "\u0436",   "\u00D7",
-      "\u0300",    "\u200D",    "\u00AD",    "\u05D0",   "\u30AB",
-      "\u3042",    "\u4E00",    "\u3005",    "\uAC00",   "\u0E01",
-      "\u0E31",    "\u2019",    "\u00B7",    "\u066C",   "\u0661",
-      "\u203F",    "\u3000",    "\u0085",    "\u24C2",   "\U0001F600",
-      "\U0001F1E6", "\u115F",   "\u30FC",    "\u03B1",   "\xFF",
-      "\xC3",      "\xE2\x80",  "\r",        "\u102B",   "\u2E80",
-      "\u3031",    "\u200B",    "\u19DA",    "\u07FA",   "\U00016FE4",
-      "Z",         ";",         "\t",        "\xF0\x9F", std::string(1, '\0'),
+      "a",          "1",        "_",      ".",        "'",
+      ",",          " ",        "\n",     "-",        "\"",
+      ":",          "@",        "\u00E9", "\u0436",   "\u00D7",
+      "\u0300",     "\u200D",   "\u00AD", "\u05D0",   "\u30AB",
+      "\u3042",     "\u4E00",   "\u3005", "\uAC00",   "\u0E01",
+      "\u0E31",     "\u2019",   "\u00B7", "\u066C",   "\u0661",
+      "\u203F",     "\u3000",   "\u0085", "\u24C2",   "\U0001F600",
+      "\U0001F1E6", "\u115F",   "\u30FC", "\u03B1",   "\xFF",
+      "\xC3",       "\xE2\x80", "\r",     "\u102B",   "\u2E80",
+      "\u3031",     "\u200B",   "\u19DA", "\u07FA",   "\U00016FE4",
+      "Z",          ";",        "\t",     "\xF0\x9F", std::string(1, '\0'),
   };
   return pieces;
 }
@@ -155,7 +155,8 @@ std::string RandomText(std::mt19937_64* random, size_t count) {
     const uint64_t kind = chosen[below(kinds)];
     if (kind < std::size(kRanges)) {
       const auto& range = kRanges[kind];
-      const auto code_point = static_cast<char32_t>(range.first + below(range.last - range.first + 1));
+      const auto code_point =
+          static_cast<char32_t>(range.first + below(range.last - range.first + 1));
       if (code_point >= 0xD800 && code_point <= 0xDFFF) continue;
       text += Utf8(code_point);
     } else if (kind == std::size(kRanges)) {

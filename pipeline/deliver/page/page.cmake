@@ -18,7 +18,7 @@ function(embed_page name page output)
 endfunction()
 
 embed_page(Page page.html page_template.cc
-           STYLES page.css
+           STYLES page.css report.css
            SCRIPTS dom.js model.js rulings.js ruling_panel.js overview.js plot.js table.js detail.js
                    page.js)
 embed_page(ComparePage compare.html compare_page_template.cc
