@@ -41,6 +41,8 @@ class SlotIndex {
     }
   }
 
+  bool HasLeft(uint32_t type) const { return lefts_.Has(type); }
+
   uint32_t Find(const Slot& slot) const {
     if (!lefts_.Has(slot.left)) return kAbsent;
     const uint64_t hash = Hash(slot);
@@ -70,6 +72,68 @@ class SlotIndex {
   std::vector<Cell> cells_;
   size_t mask_ = 0;
 };
+
+// Where the content token after a content token stands, in old stream terms.
+struct NextContent {
+  uint64_t at = 0;      // of the token; meaningless where has_slot is false
+  uint64_t bridge = 0;  // code of the function words between
+  bool has_slot = false;
+};
+
+// Looks from the content token at `at` (its first entry) for the right side of its slot.
+inline NextContent FindRight(const Entry* stream, uint64_t at, uint64_t end,
+                             const SlotRules& rules) {
+  const uint32_t function_types = rules.codes.function_types();
+  uint64_t digits = 0;
+  int between = 0;
+  for (++at; at < end; ++at) {
+    const Entry entry = stream[at];
+    if (!IsToken(entry)) {
+      if (IsMark(entry)) break;
+      continue;
+    }
+    if (rules.barriers != nullptr && rules.barriers->HasChecked(entry)) break;
+    if (entry >= function_types) return {at, rules.codes.Code(between, digits), true};
+    if (++between > rules.codes.bridge()) break;
+    digits = digits * function_types + entry;
+  }
+  return {};
+}
+
+// Calls on_slot(place in the index, slot, left_at, right_at) for every slot of stream[begin, end)
+// that is in `index`, in order, and on_document_end(at) for every end of a document. The same slots
+// as ScanSlots() finds, for about a third of the time where the index is short: entries are first
+// sifted by a bit a type, without a branch that the processor would have to guess.
+template <typename OnSlot, typename OnDocumentEnd>
+void ScanListedSlots(const Entry* stream, uint64_t begin, uint64_t end, const SlotRules& rules,
+                     const SlotIndex& index, OnSlot&& on_slot, OnDocumentEnd&& on_document_end) {
+  constexpr uint64_t kSift = 1024;
+  uint32_t sifted[kSift];
+  for (uint64_t base = begin; base < end; base += kSift) {
+    const auto size = static_cast<uint32_t>(std::min(kSift, end - base));
+    uint32_t found = 0;
+    for (uint32_t i = 0; i < size; ++i) {
+      const Entry entry = stream[base + i];
+      const bool token = IsToken(entry);
+      const bool left = token & index.HasLeft(token ? entry : 0);
+      sifted[found] = i;
+      found += static_cast<uint32_t>(left | (entry == kDocumentEnd));
+    }
+    for (uint32_t i = 0; i < found; ++i) {
+      const uint64_t at = base + sifted[i];
+      const Entry left = stream[at];
+      if (left == kDocumentEnd) {
+        on_document_end(at);
+        continue;
+      }
+      const NextContent next = FindRight(stream, at, end, rules);
+      if (!next.has_slot) continue;
+      const Slot slot{left, stream[next.at], next.bridge};
+      const uint32_t place = index.Find(slot);
+      if (place != SlotIndex::kAbsent) on_slot(place, slot, at, next.at);
+    }
+  }
+}
 
 }  // namespace phraseweld
 

@@ -101,15 +101,10 @@ absl::StatusOr<SlotPlaces> CountSlotDocuments(Lanes& lanes, const StreamView& st
                                               const SlotRules& rules, const SlotIndex& index,
                                               size_t size) {
   return CountInParts(lanes, stream, size, [&](PartCounts* part, uint64_t begin, uint64_t end) {
-    ScanSlots(
-        stream.entries, begin, end, rules,
-        [&](const Slot& slot, uint64_t left_at, uint64_t) {
-          const uint32_t item = index.Find(slot);
-          if (item != SlotIndex::kAbsent) part->See(item, left_at);
-        },
-        [&](uint64_t at, Entry mark) {
-          if (mark == kDocumentEnd) EndDocument(part, at);
-        });
+    ScanListedSlots(
+        stream.entries, begin, end, rules, index,
+        [&](uint32_t place, const Slot&, uint64_t left_at, uint64_t) { part->See(place, left_at); },
+        [&](uint64_t at) { EndDocument(part, at); });
   });
 }
 

@@ -1,119 +1,100 @@
 #include "merge/merger.h"
 
+#include <algorithm>
+
 namespace phraseweld {
 namespace {
 
-constexpr uint32_t kNone = SlotIndex::kAbsent;
-
+// A slot that was accepted.
 struct Link {
   Slot slot;
   uint64_t left_at = 0, right_at = 0;
-  uint32_t rank = kNone;
-  bool merged = false;
-  uint32_t left_becomes = kBreak;  // type of the merged token that took the left one in
+  uint32_t rank = 0;
 };
 
-// The links of one run, as far as they can still matter.
-class Chain {
+// Carries out merges from left to right and reports the slots beside them. A slot between two
+// merges changes on both sides and is reported once, so what is to the right of a merge waits until
+// the next merge is known.
+class Joiner {
  public:
-  Chain(Entry* stream, const std::vector<AcceptedSlot>& accepted, uint32_t word_types,
-        std::vector<uint64_t>* joined, const OnSlotChange& on_change)
-      : stream_(stream), accepted_(accepted), word_types_(word_types), joined_(joined),
-        on_change_(on_change) {}
+  Joiner(Entry* stream, uint64_t begin, uint64_t end, const SlotRules& rules,
+         const std::vector<AcceptedSlot>& accepted, uint32_t word_types,
+         const OnSlotChange& on_change)
+      : stream_(stream), begin_(begin), end_(end), rules_(rules), accepted_(accepted),
+        word_types_(word_types), on_change_(on_change) {}
 
-  void Add(const Link& link) {
-    if (links_.empty() && link.rank == kNone) {
-      SettleLast(kBreak);
-      last_ = link;
-      has_last_ = true;
-      return;
+  void Join(const Link& link) {
+    const uint32_t phrase = accepted_[link.rank].phrase;
+    if (on_change_) {
+      Slot before{0, link.slot.left, 0};
+      uint64_t previous_at = 0;
+      const bool has_left = FindLeft(link.left_at, &before, &previous_at);
+      const bool beside_last = has_left && has_last_ && previous_at == last_.right_at;
+      if (!beside_last) EndLast();
+      if (has_left) {
+        Slot after = before;
+        if (beside_last) after.left = accepted_[last_.rank].phrase;
+        after.right = phrase;
+        on_change_(before, after);
+      }
     }
-    if (links_.empty() && has_last_) {
-      links_.push_back(last_);
-      stretch_ = 1;
-    }
-    links_.push_back(link);
-    Decide();
-    if (stretch_ == links_.size() && !links_.back().merged) Flush(true);
+    JoinToken(stream_, link.left_at, link.right_at, phrase, word_types_);
+    last_ = link;
+    has_last_ = true;
   }
 
-  void End() {
-    if (!links_.empty()) {
-      TakeEverySecond(links_.size());
-      Flush(false);
-    }
-    SettleLast(kBreak);
+  void EndLast() {
+    if (!has_last_ || !on_change_) return;
     has_last_ = false;
+    const NextContent next = FindRight(stream_, last_.right_at, end_, rules_);
+    if (!next.has_slot) return;
+    const Slot before{last_.slot.right, stream_[next.at], next.bridge};
+    on_change_(before, {accepted_[last_.rank].phrase, before.right, before.bridge});
   }
-
-  uint64_t changed() const { return changed_; }
 
  private:
-  // links_[stretch_, end) is a descent of which nothing is decided yet; all before is.
-  void Decide() {
-    const size_t newest = links_.size() - 1;
-    const bool descends = stretch_ < newest && links_[newest].rank < links_[newest - 1].rank;
-    if (stretch_ < newest && !descends) TakeEverySecond(newest);
-    if (stretch_ == newest) {
-      const bool beside_merged = newest > 0 && links_[newest - 1].merged;
-      if (links_[newest].rank == kNone || beside_merged) stretch_ = newest + 1;
-    }
-  }
-
-  void TakeEverySecond(size_t end) {
-    for (size_t i = end; i > stretch_; i = i >= stretch_ + 2 ? i - 2 : stretch_) {
-      links_[i - 1].merged = true;
-    }
-    stretch_ = end;
-  }
-
-  uint32_t Phrase(const Link& link) const { return accepted_[link.rank].phrase; }
-
-  void Flush(bool keep_last) {
-    has_last_ = false;
-    for (size_t i = 0; i < links_.size(); ++i) {
-      Link& link = links_[i];
-      if (link.merged) {
-        ++(*joined_)[link.rank];
-        JoinToken(stream_, link.left_at, link.right_at, Phrase(link), word_types_);
-        changed_ += 2;
-        continue;
-      }
-      if (i > 0) link.left_becomes = links_[i - 1].merged ? Phrase(links_[i - 1]) : kBreak;
-      last_ = link;
-      has_last_ = true;
-      if (i + 1 < links_.size()) {
-        SettleLast(links_[i + 1].merged ? Phrase(links_[i + 1]) : kBreak);
-        has_last_ = false;
+  // The slot whose right side is the content token at `at`, as it stood at the start of the pass.
+  // The stream before `at` shows the merges so far; of the last one the right side is still known.
+  bool FindLeft(uint64_t at, Slot* slot, uint64_t* left_at) const {
+    uint32_t bridge[kMostBridge];
+    int between = 0;
+    bool found = false;
+    while (!found && at > begin_) {
+      const Entry entry = stream_[--at];
+      if (has_last_ && at == last_.right_at) {
+        slot->left = last_.slot.right;
+        found = true;
+      } else if (IsMark(entry)) {
+        return false;
+      } else if (IsToken(entry)) {
+        if (rules_.barriers != nullptr && rules_.barriers->HasChecked(entry)) return false;
+        if (entry >= rules_.codes.function_types()) {
+          slot->left = entry;
+          found = true;
+        } else {
+          if (between == rules_.codes.bridge()) return false;
+          bridge[between++] = entry;
+        }
       }
     }
-    if (!keep_last) {
-      SettleLast(kBreak);
-      has_last_ = false;
+    if (!found) return false;
+    uint64_t digits = 0;
+    for (int i = between - 1; i >= 0; --i) {
+      digits = digits * rules_.codes.function_types() + bridge[i];
     }
-    links_.clear();
-    stretch_ = 0;
-  }
-
-  // Reports what became of the last unmerged slot, now that its right neighbour is known.
-  void SettleLast(uint32_t right_becomes) {
-    if (!has_last_ || (last_.left_becomes == kBreak && right_becomes == kBreak)) return;
-    Slot after = last_.slot;
-    if (last_.left_becomes != kBreak) after.left = last_.left_becomes;
-    if (right_becomes != kBreak) after.right = right_becomes;
-    on_change_(last_.slot, after);
+    slot->bridge = rules_.codes.Code(between, digits);
+    *left_at = at;
+    return true;
   }
 
   Entry* stream_;
+  const uint64_t begin_, end_;
+  const SlotRules& rules_;
   const std::vector<AcceptedSlot>& accepted_;
   const uint32_t word_types_;
-  std::vector<uint64_t>* joined_;
   const OnSlotChange& on_change_;
-  std::vector<Link> links_;
-  size_t stretch_ = 0;
   Link last_;
   bool has_last_ = false;
-  uint64_t changed_ = 0;
 };
 
 }  // namespace
@@ -131,22 +112,45 @@ void JoinToken(Entry* stream, uint64_t left_at, uint64_t right_at, uint32_t phra
   stream[left_at] = phrase;
 }
 
-uint64_t Merger::Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
-                       const OnSlotChange& on_change) const {
-  Chain chain(stream, accepted_, word_types_, joined, on_change);
-  ScanSlots(
-      stream, begin, end, rules_,
-      [&](const Slot& slot, uint64_t left_at, uint64_t right_at) {
-        Link link;
-        link.slot = slot;
-        link.left_at = left_at;
-        link.right_at = right_at;
-        link.rank = index_.Find(slot);
-        chain.Add(link);
+void Merger::Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
+                   const OnSlotChange& on_change) const {
+  Joiner joiner(stream, begin, end, rules_, accepted_, word_types_, on_change);
+  // A chain's links of which nothing is decided yet: a descent to ever better ranks.
+  std::vector<Link> descent;
+  std::vector<Link> taken;
+  Link previous;
+  bool has_previous = false;
+  const auto decide = [&] {
+    // The last of a descent is better than both its neighbours: it is taken, the one before it
+    // drops out, the one before that is free again, and so on.
+    taken.clear();
+    for (size_t i = descent.size(); i > 0; i = i > 2 ? i - 2 : 0) taken.push_back(descent[i - 1]);
+    for (size_t i = taken.size(); i > 0; --i) {
+      ++(*joined)[taken[i - 1].rank];
+      joiner.Join(taken[i - 1]);
+    }
+    descent.clear();
+  };
+  ScanListedSlots(
+      stream, begin, end, rules_, index_,
+      [&](uint32_t rank, const Slot& slot, uint64_t left_at, uint64_t right_at) {
+        const Link link{slot, left_at, right_at, rank};
+        const bool chained = has_previous && previous.right_at == left_at;
+        if (!descent.empty() && chained && rank < previous.rank) {
+          descent.push_back(link);
+        } else {
+          // Of a descent that ends here the last link is taken, and a link that shares a token with
+          // it is dropped.
+          const bool beside_taken = chained && !descent.empty();
+          decide();
+          if (!beside_taken) descent.push_back(link);
+        }
+        previous = link;
+        has_previous = true;
       },
-      [&](uint64_t, Entry) { chain.End(); });
-  chain.End();
-  return chain.changed();
+      [](uint64_t) {});
+  decide();
+  joiner.EndLast();
 }
 
 }  // namespace phraseweld

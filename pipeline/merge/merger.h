@@ -21,7 +21,8 @@ struct AcceptedSlot {
 using OnSlotChange = std::function<void(const Slot& before, const Slot& after)>;
 
 // Carries out a pass's merges on stretches of the stream. Step code: one call works on one stretch,
-// calls on different stretches may overlap in time.
+// calls on different stretches may overlap in time. A merge is decided on the stream as it stood at
+// the start of the pass, and carried out when nothing to its left can be undecided any more.
 //
 // In each run the contract says: take the best-ranked accepted slot, leftmost first, merge it, drop
 // those that share a token with it, and go on. Slots that share tokens follow each other, so a run
@@ -37,9 +38,8 @@ class Merger {
       : rules_(rules), accepted_(accepted), index_(index), word_types_(word_types) {}
 
   // Merges in stream[begin, end), which begins and ends with a run. Adds to (*joined)[rank]. Calls
-  // on_change for every slot beside a merge; the merged slots themselves are not reported.
-  // Returns how many entries were changed.
-  uint64_t Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
+  // on_change, where given, for every slot beside a merge; the merged ones are not reported.
+  void Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
                  const OnSlotChange& on_change) const;
 
  private:

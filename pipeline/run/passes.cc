@@ -274,10 +274,12 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
   std::vector<std::vector<uint64_t>> joined(static_cast<size_t>(lanes_.lanes()),
                                             std::vector<uint64_t>(accepted.size(), 0));
   PW_RETURN_IF_ERROR(ForChunks([&](int lane, uint64_t begin, uint64_t end) {
-    OnSlotChange on_change = [&](const Slot& before, const Slot& after) {
-      counter_->Change(lane, before, after);
-    };
-    if (!count_changes) on_change = [](const Slot&, const Slot&) {};
+    OnSlotChange on_change;
+    if (count_changes) {
+      on_change = [&](const Slot& before, const Slot& after) {
+        counter_->Change(lane, before, after);
+      };
+    }
     merger.Merge(corpus_.stream.entries, begin, end, &joined[static_cast<size_t>(lane)],
                  on_change);
   }));

@@ -73,7 +73,7 @@ std::optional<double> SpearmanRho(absl::Span<const double> a, absl::Span<const d
     of_b += (ranks_b[i] - mean) * (ranks_b[i] - mean);
   }
   if (of_a == 0 || of_b == 0) return std::nullopt;
-  return std::clamp(both / std::sqrt(of_a) / std::sqrt(of_b), -1.0, 1.0);
+  return std::clamp(both / std::sqrt(of_a * of_b), -1.0, 1.0);
 }
 
 std::optional<double> KendallTauB(absl::Span<const double> a, absl::Span<const double> b) {
@@ -96,8 +96,9 @@ std::optional<double> KendallTauB(absl::Span<const double> a, absl::Span<const d
   const double agreement = static_cast<double>(pairs) - static_cast<double>(tied_a) -
                            static_cast<double>(tied_b) + static_cast<double>(tied_both) -
                            2 * static_cast<double>(exchanges);
-  return std::clamp(agreement / std::sqrt(static_cast<double>(pairs - tied_a)) /
-                        std::sqrt(static_cast<double>(pairs - tied_b)),
+  // The root of a square is exact, so that equal orders give exactly 1.
+  return std::clamp(agreement / std::sqrt(static_cast<double>(pairs - tied_a) *
+                                          static_cast<double>(pairs - tied_b)),
                     -1.0, 1.0);
 }
 

@@ -30,8 +30,8 @@ class Random {
 };
 
 // Words with the frequencies of a natural text. The word of rank r, from 1, has a probability in
-// proportion to 1 / (r + 2.7) (Zipf-Mandelbrot) up to rank 20,000 and to (r + 2.7)^-1.9 beyond.
-// There is no last rank, so new words appear for ever, their number growing as the 1/1.9-th power
+// proportion to 1 / (r + 2.7) (Zipf-Mandelbrot) up to rank 20,000 and to (r + 2.7)^-1.8 beyond.
+// There is no last rank, so new words appear for ever, their number growing as the 1/1.8-th power
 // of the text (Heaps). The first ranks are function words of English; the others are invented words
 // of ASCII letters, different for every rank and none of them with a "q" or an "e".
 //

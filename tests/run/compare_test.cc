@@ -83,11 +83,15 @@ TEST_F(CompareTest, ARunDoesNotDifferFromItself) {
   EXPECT_THAT(comparison.gained, IsEmpty());
   EXPECT_THAT(comparison.lost, IsEmpty());
   EXPECT_THAT(comparison.inputs, IsEmpty());
-  EXPECT_EQ(comparison.kept.size(), 4u);
+  EXPECT_EQ(comparison.kept.size(), 5u);
   EXPECT_EQ(comparison.kept_changed, 0u);
   for (const OrderAgreement& agreement : comparison.agreements) {
+    if (agreement.by == "npmi") {  // 1 for all, so that there is no order
+      EXPECT_FALSE(agreement.spearman || agreement.kendall);
+      continue;
+    }
     EXPECT_EQ(agreement.spearman, 1) << agreement.by;
-    EXPECT_NEAR(*agreement.kendall, 1, 1e-15) << agreement.by;
+    EXPECT_EQ(agreement.kendall, 1) << agreement.by;
   }
   for (const KeyDifference& key : comparison.keys) EXPECT_FALSE(key.shapes_phrases) << key.key;
 }
@@ -102,15 +106,17 @@ TEST_F(CompareTest, EveryPhraseIsGainedLostOrKeptAndSidesMirror) {
   EXPECT_EQ(Texts(there.gained), Texts(back.lost));
   EXPECT_EQ(Texts(there.lost), Texts(back.gained));
   EXPECT_EQ(Texts(there.gained), std::set<std::string>({"sea mark"}));
-  EXPECT_EQ(Texts(there.lost), std::set<std::string>({"left bank light", "mooring line"}));
+  EXPECT_EQ(Texts(there.lost),
+            std::set<std::string>({"left bank", "left bank light", "mooring line"}));
   ASSERT_EQ(there.kept.size(), 2u);
   EXPECT_EQ(there.kept_changed, 2u);
-  const KeptPhrase& bank_light = there.kept[1];
+  const KeptPhrase& bank_light = there.kept[0];
   EXPECT_EQ(bank_light.left.phrase, "bank light");
   EXPECT_EQ(bank_light.left.occurrences, 3u);
-  EXPECT_EQ(bank_light.left.inside_longer, 5u);
   EXPECT_EQ(bank_light.right.occurrences, 9u);
-  EXPECT_EQ(bank_light.left.rank, 1u);
+  EXPECT_EQ(bank_light.left.rank, 5u);
+  EXPECT_EQ(bank_light.right.rank, 1u);
+  EXPECT_EQ(there.kept[1].left.phrase, "tide gauge");
   EXPECT_EQ(there.inputs.size(), 1u);
   EXPECT_EQ(there.inputs[0].change, InputChange::kChanged);
 }
@@ -247,7 +253,7 @@ RunComparison Hostile() {
 TEST(CompareRendering, TextFitsTheTerminalAndHoldsNoControls) {
   const std::string text = ComparisonText(Hostile(), 10);
   for (const std::string_view line : Split(text, '\n')) {
-    if (!Contains(line, "www")) EXPECT_LE(DisplayWidth(line), 80u) << line;
+    EXPECT_TRUE(Contains(line, "www") || DisplayWidth(line) <= 80) << line;
     for (size_t at = 0; at < line.size();) {
       const auto point = NextCodePoint(line, &at);
       ASSERT_TRUE(point.has_value()) << line;
@@ -315,6 +321,7 @@ TEST_F(CompareTest, AJobThatIsNotTheAuditsIsAnError) {
   Job other = LinesJob();
   other.passes.resize(1);
   other.corpus.files = {"x"};
+  other.run_folder = run;
   folder_.Put("left/job.yaml", WriteJobYaml(other));
   const auto comparison = CompareRuns(FileSystem::Posix(), run, run);
   EXPECT_EQ(comparison.status().code(), absl::StatusCode::kDataLoss);

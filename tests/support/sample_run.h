@@ -2,6 +2,7 @@
 #define PHRASEWELD_TESTS_SUPPORT_SAMPLE_RUN_H_
 
 #include <cstdint>
+#include <filesystem>
 #include <map>
 #include <string>
 #include <vector>
@@ -22,6 +23,7 @@ namespace phraseweld {
 // not looked at.
 inline std::string PutSampleRun(const TempFolder& folder, const std::string& name, const Job& job,
                                 const std::vector<RefInput>& inputs) {
+  std::filesystem::remove_all(folder.Path(name));
   std::string manifest = "{\"program\":\"phraseweld\",\"version\":\"0.1.0\",\"job\":";
   AppendJsonString(&manifest, job.job);
   manifest += ",\"inputs\":[";
