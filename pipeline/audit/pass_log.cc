@@ -3,12 +3,9 @@
 #include "absl/strings/str_cat.h"
 #include "absl/strings/str_format.h"
 #include "base/json.h"
-#include "base/status.h"
 
 namespace phraseweld {
 namespace {
-
-constexpr size_t kPiece = size_t{1} << 16;  // bytes handed on at once
 
 void AppendCount(std::string* out, const char* key, uint64_t value) {
   AppendJsonKey(out, key);
@@ -43,8 +40,10 @@ std::string PassLine(const PassRecord& pass, const ScoreWriter& scores) {
   return out;
 }
 
-void AppendSlotLine(std::string* out, const SlotRecord& record, uint64_t rank,
-                    const std::vector<Quantity>& shown, const PassLogContext& context) {
+}  // namespace
+
+void AppendSlotLine(const SlotRecord& record, uint64_t rank, const std::vector<Quantity>& shown,
+                    const PassLogContext& context, std::string* out) {
   const TypeTable& types = *context.types;
   const SlotTable& table = record.table;
   *out += '{';
@@ -81,7 +80,7 @@ void AppendSlotLine(std::string* out, const SlotRecord& record, uint64_t rank,
   *out += "}\n";
 }
 
-std::string BalanceLine(const PassRecord& pass) {
+std::string PassLogTail(const PassRecord& pass) {
   std::string out = "{";
   AppendText(&out, "kind", "balance");
   AppendCount(&out, "pass", static_cast<uint64_t>(pass.number));
@@ -94,12 +93,9 @@ std::string BalanceLine(const PassRecord& pass) {
   return out;
 }
 
-}  // namespace
-
 std::string PassLogName(int pass) { return absl::StrFormat("pass-%02d.jsonl", pass); }
 
-absl::Status WritePassLog(const PassRecord& pass, const PassLogContext& context,
-                          const std::function<absl::Status(std::string_view)>& append) {
+std::string PassLogHead(const PassRecord& pass, const PassLogContext& context) {
   std::string out = PassLine(pass, context.scores);
   for (const RuledRecord& ruled : pass.ruled) {
     out += '{';
@@ -110,19 +106,7 @@ absl::Status WritePassLog(const PassRecord& pass, const PassLogContext& context,
     if (!ruled.reason.empty()) AppendText(&out, "reason", ruled.reason);
     out += "}\n";
   }
-  const std::vector<Quantity> shown = ShownMeasures(pass.options);
-  for (const auto* list : {&pass.accepted, &pass.near_misses}) {
-    uint64_t rank = 0;
-    for (const SlotRecord& record : *list) {
-      AppendSlotLine(&out, record, ++rank, shown, context);
-      if (out.size() >= kPiece) {
-        PW_RETURN_IF_ERROR(append(out));
-        out.clear();
-      }
-    }
-  }
-  out += BalanceLine(pass);
-  return append(out);
+  return out;
 }
 
 absl::Status CheckBalance(const PassRecord& pass, const BridgeCodes& codes) {
@@ -130,8 +114,7 @@ absl::Status CheckBalance(const PassRecord& pass, const BridgeCodes& codes) {
   for (const SlotRecord& record : pass.accepted) {
     if (record.joined > record.table.n) {
       return absl::InternalError(absl::StrCat("pass ", pass.number, ": ", record.joined,
-                                              " slots joined of a type that has ",
-                                              record.table.n));
+                                              " slots joined of a type that has ", record.table.n));
     }
     joined += record.joined;
     absorbed += record.joined * static_cast<uint64_t>(1 + codes.Length(record.slot.bridge));

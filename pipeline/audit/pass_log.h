@@ -3,7 +3,7 @@
 
 #include <functional>
 #include <string>
-#include <string_view>
+#include <vector>
 
 #include "absl/status/status.h"
 #include "base/records.h"
@@ -23,9 +23,14 @@ struct PassLogContext {
 // "pass-01.jsonl"
 std::string PassLogName(int pass);
 
-// The bytes of a pass's audit log, handed to `append` in pieces, in order.
-absl::Status WritePassLog(const PassRecord& pass, const PassLogContext& context,
-                          const std::function<absl::Status(std::string_view)>& append);
+// A pass's audit log is its head (the `pass` line and the rulings), a line for each accepted type
+// and then for each near miss, both in rank order, and its tail (the `balance` line). Every line
+// ends in a line feed. Lines do not depend on each other, so they may be made side by side.
+std::string PassLogHead(const PassRecord& pass, const PassLogContext& context);
+// `shown`: ShownMeasures() of the pass. `rank` counts from 1 in its list.
+void AppendSlotLine(const SlotRecord& record, uint64_t rank, const std::vector<Quantity>& shown,
+                    const PassLogContext& context, std::string* out);
+std::string PassLogTail(const PassRecord& pass);
 
 // An error that names the first sum that does not hold: tokens in - absorbed = tokens out, joined
 // as the accepted types add up to, joined <= n for each.

@@ -14,7 +14,7 @@ namespace phraseweld {
 enum class Layout { kText, kLines, kParagraphs, kJsonLines };
 enum class BadLines { kStop, kKeep };
 enum class Fold { kNone, kCase, kCompatibilityCase };
-enum class Hyphens { kJoin, kBreak };
+enum class Hyphens { kJoin, kSeparate };
 enum class Numbers { kAnywhere, kNotFirst, kNowhere };
 enum class Margins { kSlots, kWords };
 enum class CorpusForm { kSource, kWords, kNone };
@@ -60,7 +60,7 @@ struct Job {
     bool strip_accents = false;
     Hyphens hyphens = Hyphens::kJoin;
     Numbers numbers = Numbers::kNotFirst;
-    std::string function_words = "none";  // as written: none, a language, or a file
+    std::string function_words = "none";          // as written: none, a language, or a file
     std::vector<std::string> function_word_list;  // read in, as written in the list
     int bridge = 2;
   } words;

@@ -27,8 +27,8 @@ enum class Quantity : int {
 };
 
 inline constexpr std::array<std::string_view, 14> kQuantityNames = {
-    "occurrences", "documents", "pmi",  "npmi", "pmi2",       "pmi3",        "pmi_floor",
-    "g2",          "chi2",      "t",    "dice", "dp_forward", "dp_backward", "burst"};
+    "occurrences", "documents", "pmi", "npmi", "pmi2",       "pmi3",        "pmi_floor",
+    "g2",          "chi2",      "t",   "dice", "dp_forward", "dp_backward", "burst"};
 
 inline constexpr int kQuantities = static_cast<int>(kQuantityNames.size());
 

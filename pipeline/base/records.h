@@ -33,7 +33,7 @@ struct SlotRecord {
 
 // An always-ruling in pass 0.
 struct RuledRecord {
-  std::string text;                // the phrase; `phrase` is 0 where the corpus lacks a word of it
+  std::string text;  // the phrase; `phrase` is 0 where the corpus lacks a word of it
   uint32_t phrase = 0;
   uint64_t joined = 0;
   uint64_t documents = 0;

@@ -48,16 +48,15 @@ class SlotIndex {
     const uint64_t hash = Hash(slot);
     const uint64_t bit = (hash >> 32) & filter_mask_;
     if (((filter_[bit >> 6] >> (bit & 63)) & 1) == 0) return kAbsent;
-    for (size_t cell = hash & mask_; cells_[cell].place != kAbsent;
-         cell = (cell + 1) & mask_) {
+    for (size_t cell = hash & mask_; cells_[cell].place != kAbsent; cell = (cell + 1) & mask_) {
       if (cells_[cell].slot == slot) return cells_[cell].place;
     }
     return kAbsent;
   }
 
  private:
-  // Bits of the filter a slot: at 16 about one slot in twenty gets through by chance, and the filter
-  // of 100,000 slots fits the second-level cache.
+  // Bits of the filter a slot: at 16 about one slot in twenty gets through by chance, and the
+  // filter of 100,000 slots fits the second-level cache.
   static constexpr size_t kFilterBits = 16;
   struct Cell {
     Slot slot;

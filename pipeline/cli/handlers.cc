@@ -1,7 +1,9 @@
 #include "cli/commands.h"
 #include "cli/handle_compare.h"
 #include "cli/handle_grade.h"
+#include "cli/handle_report.h"
 #include "cli/handle_run.h"
+#include "cli/handle_trace.h"
 #include "cli/handle_verify.h"
 
 namespace phraseweld {
@@ -12,6 +14,8 @@ Handlers ProgramHandlers() {
   handlers.check = HandleCheck;
   handlers.verify = HandleVerify;
   handlers.restore = HandleRestore;
+  handlers.trace = HandleTrace;
+  handlers.report = HandleReport;
   handlers.grade = HandleGrade;
   handlers.compare = HandleCompare;
   return handlers;

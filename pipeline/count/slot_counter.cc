@@ -18,8 +18,8 @@ namespace {
 
 // Slots a partition that are counted at once in the second-level cache of common processors.
 constexpr uint64_t kSlotsPerPartition = 48 * 1024;
-constexpr size_t kMostPartitions = 2048;  // more would thrash the address translation cache
-constexpr size_t kChunkRecords = 1024;    // 8 KiB in memory
+constexpr size_t kMostPartitions = 2048;    // more would thrash the address translation cache
+constexpr size_t kChunkRecords = 1024;      // 8 KiB in memory
 constexpr size_t kDiskChunkRecords = 2048;  // 16 KiB a write
 
 // (left, bridge, right) in one integer, so that its order is the order of the three.
@@ -46,9 +46,7 @@ class SlotPacking {
   }
   Key LeftAndBridge(Key key) const { return key >> type_bits_; }
   // (bridge, right)
-  Key BridgeAndRight(Key key) const {
-    return key & ((Key{1} << (type_bits_ + bridge_bits_)) - 1);
-  }
+  Key BridgeAndRight(Key key) const { return key & ((Key{1} << (type_bits_ + bridge_bits_)) - 1); }
 
  private:
   int type_bits_, bridge_bits_;
@@ -132,9 +130,8 @@ class SlotStore final : public SlotCounter {
     }
     slots_ += static_cast<uint64_t>(slots);
     slot_types_ = distinct;
-    PW_RETURN_IF_ERROR(lanes.ForEach(tables_.partitions(), [this](int, size_t partition) {
-      return UpdateMargins(partition);
-    }));
+    PW_RETURN_IF_ERROR(lanes.ForEach(
+        tables_.partitions(), [this](int, size_t partition) { return UpdateMargins(partition); }));
     right_tables_.NextGeneration();
     spooled_ = std::max(spooled_, right_changes_->stored_bytes());
     right_changes_->Rewind();
@@ -415,8 +412,7 @@ absl::StatusOr<std::unique_ptr<SlotCounter>> SlotCounter::Create(const CounterOp
   // Passes make new types; as many again as there are words is more than any corpus has shown.
   const uint64_t room = std::max<uint64_t>(options.types_now, uint64_t{1} << 20);
   if (options.types_now + room <= narrow.type_limit()) return OpenStore<uint64_t>(options, narrow);
-  return OpenStore<WideKey>(options,
-                            SlotPacking<WideKey>::ForCodes(options.rules.codes.codes()));
+  return OpenStore<WideKey>(options, SlotPacking<WideKey>::ForCodes(options.rules.codes.codes()));
 }
 
 }  // namespace phraseweld

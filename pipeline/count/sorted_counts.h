@@ -40,7 +40,8 @@ inline void SortKeys(std::vector<uint64_t>* keys, std::vector<uint64_t>* spare) 
   std::vector<uint32_t> histogram(kDigits * kBuckets, 0);
   for (uint64_t key : *keys) {
     for (int digit = 0; digit < kDigits; ++digit) {
-      ++histogram[static_cast<size_t>(digit) * kBuckets + ((key >> (digit * kBits)) & (kBuckets - 1))];
+      ++histogram[static_cast<size_t>(digit) * kBuckets +
+                  ((key >> (digit * kBits)) & (kBuckets - 1))];
     }
   }
   spare->resize(size);

@@ -22,9 +22,14 @@ std::string_view SurfaceGap(std::string_view gap) {
   return " ";
 }
 
-BlockWalk::BlockWalk(const WalkOptions& options, const Entry* stream, uint64_t size,
-                     uint64_t begin, uint64_t end, std::string_view bytes, BlockOutput* output)
-    : options_(options), stream_(stream), size_(size), end_(end), at_(begin), bytes_(bytes),
+BlockWalk::BlockWalk(const WalkOptions& options, const Entry* stream, uint64_t size, uint64_t begin,
+                     uint64_t end, std::string_view bytes, BlockOutput* output)
+    : options_(options),
+      stream_(stream),
+      size_(size),
+      end_(end),
+      at_(begin),
+      bytes_(bytes),
       output_(output) {
   if (options_.wanted != nullptr) {
     wanted_ = static_cast<size_t>(
@@ -60,8 +65,7 @@ absl::Status BlockWalk::Piece(const WalkPiece& piece) {
       if (piece.begins_passage) return Changed();
       BeginToken(entry, at_, piece, word);
     } else {
-      const std::string_view gap =
-          piece.text.substr(previous_end, word.begin - previous_end);
+      const std::string_view gap = piece.text.substr(previous_end, word.begin - previous_end);
       Join(piece, previous_end, word.begin);
       spelling_ += SurfaceGap(gap);
     }
@@ -101,8 +105,7 @@ absl::Status BlockWalk::Expect(Entry mark) {
   return absl::OkStatus();
 }
 
-void BlockWalk::BeginToken(Entry entry, uint64_t at, const WalkPiece& piece,
-                           const WordSpan& word) {
+void BlockWalk::BeginToken(Entry entry, uint64_t at, const WalkPiece& piece, const WordSpan& word) {
   token_is_carried_ = IsInside(entry);
   while (IsInside(stream_[at])) --at;
   token_type_ = stream_[at];

@@ -24,7 +24,7 @@ namespace phraseweld {
 // What a walk makes of one block.
 struct BlockOutput {
   struct Joint {
-    uint64_t at = 0;  // where the joiner begins in `text`
+    uint64_t at = 0;                      // where the joiner begins in `text`
     uint64_t gap_begin = 0, gap_end = 0;  // bytes of the block that it stands for
   };
   // A piece of a passage's spans: the items of the list, each ended by a comma but for one that
@@ -39,15 +39,15 @@ struct BlockOutput {
     uint32_t document = 0, field = 0;
     uint64_t byte = 0;
   };
-  std::string text;            // the rewritten bytes of the block
+  std::string text;  // the rewritten bytes of the block
   std::vector<Joint> joints;
-  std::string words;           // the block's part of the corpus as words
+  std::string words;  // the block's part of the corpus as words
   std::vector<Spans> spans;
   std::vector<Found> found;
   // The spelling of a phrase that began in an earlier block, as far as this one has it, and of one
   // that goes on in the next. A block that lies inside one phrase has only carried_in.
   std::string carried_in, carried_out;
-  bool carries_on = false;     // carried_in does not end in this block
+  bool carries_on = false;  // carried_in does not end in this block
   uint32_t carried_in_type = 0;
   bool has_carried_in = false, has_carried_out = false;
 };
@@ -101,7 +101,7 @@ class BlockWalk {
   uint64_t at_;
   std::string_view bytes_;
   BlockOutput* output_;
-  uint64_t copied_ = 0;          // bytes of the block that are in output_->text
+  uint64_t copied_ = 0;  // bytes of the block that are in output_->text
   size_t wanted_ = 0;
   // The phrase token that the walk is inside of.
   bool in_token_ = false, token_is_carried_ = false;

@@ -5,12 +5,9 @@
 
 #include "absl/strings/str_cat.h"
 #include "base/json.h"
-#include "base/status.h"
 
 namespace phraseweld {
 namespace {
-
-constexpr size_t kPiece = size_t{1} << 16;  // bytes handed on at once
 
 void AppendCount(std::string* out, const char* key, uint64_t value) {
   AppendJsonKey(out, key);
@@ -22,13 +19,6 @@ void AppendText(std::string* out, const char* key, std::string_view text) {
   AppendJsonString(out, text);
 }
 
-absl::Status AppendIfLarge(std::string* out, const AppendBytes& append) {
-  if (out->size() < kPiece) return absl::OkStatus();
-  PW_RETURN_IF_ERROR(append(*out));
-  out->clear();
-  return absl::OkStatus();
-}
-
 void AppendDerivation(std::string* out, const Derivation& derivation,
                       const InventoryContext& context) {
   const TypeTable& types = *context.types;
@@ -36,8 +26,7 @@ void AppendDerivation(std::string* out, const Derivation& derivation,
   *out += '{';
   AppendCount(out, "pass", static_cast<uint64_t>(derivation.pass));
   AppendText(out, "left", ruled ? "" : types.Text(derivation.slot->left));
-  AppendText(out, "bridge",
-             ruled ? "" : types.Text(context.codes->Words(derivation.slot->bridge)));
+  AppendText(out, "bridge", ruled ? "" : types.Text(context.codes->Words(derivation.slot->bridge)));
   AppendText(out, "right", ruled ? "" : types.Text(derivation.slot->right));
   AppendCount(out, "joined", derivation.joined);
   *out += '}';
@@ -60,59 +49,48 @@ void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
   });
 }
 
-absl::Status WriteInventoryJson(const std::vector<PhraseRecord>& phrases,
-                                const InventoryContext& context, const AppendBytes& append) {
-  std::string out;
-  for (const PhraseRecord& phrase : phrases) {
-    out += '{';
-    AppendText(&out, "phrase", phrase.text);
-    AppendCount(&out, "words", static_cast<uint64_t>(phrase.words));
-    AppendCount(&out, "pass", static_cast<uint64_t>(phrase.made_of.front().pass));
-    AppendCount(&out, "occurrences", phrase.occurrences);
-    AppendCount(&out, "inside_longer", phrase.inside_longer);
-    AppendCount(&out, "documents", phrase.documents);
-    AppendText(&out, "surface", phrase.surface);
-    AppendJsonKey(&out, "made_of");
-    out += '[';
-    for (size_t i = 0; i < phrase.made_of.size(); ++i) {
-      if (i > 0) out += ',';
-      AppendDerivation(&out, phrase.made_of[i], context);
-    }
-    out += ']';
-    AppendJsonKey(&out, "scores");
-    out += '{';
-    if (phrase.scored) {
-      for (Quantity quantity : context.shown(phrase.scored_pass)) {
-        AppendJsonKey(&out, QuantityName(quantity));
-        out += context.scores.format(context.scores.score(quantity, *phrase.scored));
-      }
-    }
-    out += '}';
-    if (!phrase.reason.empty()) AppendText(&out, "reason", phrase.reason);
-    out += "}\n";
-    PW_RETURN_IF_ERROR(AppendIfLarge(&out, append));
+void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& context,
+                         std::string* out) {
+  *out += '{';
+  AppendText(out, "phrase", phrase.text);
+  AppendCount(out, "words", static_cast<uint64_t>(phrase.words));
+  AppendCount(out, "pass", static_cast<uint64_t>(phrase.made_of.front().pass));
+  AppendCount(out, "occurrences", phrase.occurrences);
+  AppendCount(out, "inside_longer", phrase.inside_longer);
+  AppendCount(out, "documents", phrase.documents);
+  AppendText(out, "surface", phrase.surface);
+  AppendJsonKey(out, "made_of");
+  *out += '[';
+  for (size_t i = 0; i < phrase.made_of.size(); ++i) {
+    if (i > 0) *out += ',';
+    AppendDerivation(out, phrase.made_of[i], context);
   }
-  return append(out);
+  *out += ']';
+  AppendJsonKey(out, "scores");
+  *out += '{';
+  if (phrase.scored) {
+    for (Quantity quantity : context.shown(phrase.scored_pass)) {
+      AppendJsonKey(out, QuantityName(quantity));
+      *out += context.scores.format(context.scores.score(quantity, *phrase.scored));
+    }
+  }
+  *out += '}';
+  if (!phrase.reason.empty()) AppendText(out, "reason", phrase.reason);
+  *out += "}\n";
 }
 
-absl::Status WriteInventoryTable(const std::vector<PhraseRecord>& phrases,
-                                 const InventoryContext& context, const AppendBytes& append) {
-  std::string out =
-      "phrase\twords\tpass\toccurrences\tinside_longer\tdocuments\tsurface\tpmi\tnpmi\tg2\n";
-  for (const PhraseRecord& phrase : phrases) {
-    absl::StrAppend(&out, phrase.text, "\t", phrase.words, "\t", phrase.made_of.front().pass, "\t",
-                    phrase.occurrences, "\t", phrase.inside_longer, "\t", phrase.documents, "\t",
-                    phrase.surface);
-    for (Quantity quantity : {Quantity::kPmi, Quantity::kNpmi, Quantity::kG2}) {
-      out += '\t';
-      if (phrase.scored) {
-        out += context.scores.format(context.scores.score(quantity, *phrase.scored));
-      }
+void AppendInventoryRow(const PhraseRecord& phrase, const InventoryContext& context,
+                        std::string* out) {
+  absl::StrAppend(out, phrase.text, "\t", phrase.words, "\t", phrase.made_of.front().pass, "\t",
+                  phrase.occurrences, "\t");
+  absl::StrAppend(out, phrase.inside_longer, "\t", phrase.documents, "\t", phrase.surface);
+  for (Quantity quantity : {Quantity::kPmi, Quantity::kNpmi, Quantity::kG2}) {
+    *out += '\t';
+    if (phrase.scored) {
+      *out += context.scores.format(context.scores.score(quantity, *phrase.scored));
     }
-    out += '\n';
-    PW_RETURN_IF_ERROR(AppendIfLarge(&out, append));
   }
-  return append(out);
+  *out += '\n';
 }
 
 }  // namespace phraseweld

@@ -2,10 +2,9 @@
 #define PHRASEWELD_DELIVER_INVENTORY_H_
 
 #include <functional>
-#include <string_view>
+#include <string>
 #include <vector>
 
-#include "absl/status/status.h"
 #include "base/records.h"
 #include "base/types.h"
 
@@ -19,17 +18,19 @@ struct InventoryContext {
   std::function<std::vector<Quantity>(int pass)> shown;
 };
 
-using AppendBytes = std::function<absl::Status(std::string_view)>;
-
 // Sorts into the inventory's order: occurrences + inside_longer, largest first, then the text in
 // byte order, then the forms of its words one by one.
 void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases);
 
-// inventory.jsonl: one object a line. inventory.tsv: the same for a spreadsheet, with a header.
-absl::Status WriteInventoryJson(const std::vector<PhraseRecord>& phrases,
-                                const InventoryContext& context, const AppendBytes& append);
-absl::Status WriteInventoryTable(const std::vector<PhraseRecord>& phrases,
-                                 const InventoryContext& context, const AppendBytes& append);
+// A line of inventory.jsonl, and a row of inventory.tsv (after the header), with its line feed.
+// Lines do not depend on each other, so they may be made side by side.
+void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& context,
+                         std::string* out);
+void AppendInventoryRow(const PhraseRecord& phrase, const InventoryContext& context,
+                        std::string* out);
+
+inline constexpr char kInventoryHeader[] =
+    "phrase\twords\tpass\toccurrences\tinside_longer\tdocuments\tsurface\tpmi\tnpmi\tg2\n";
 
 }  // namespace phraseweld
 

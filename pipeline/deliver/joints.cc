@@ -144,10 +144,10 @@ absl::StatusOr<OutputDigest> Undo(const std::string& path, const std::string& jo
   std::string hash;
   AppendHash(&hash, hasher.Value());
   if (*source_size != size || *source_hash != hash) {
-    return absl::DataLossError(absl::StrCat(
-        path, ": the restored text is not the source: ", size, " bytes with XXH3-128 ",
-        ToHex(hasher.Value()), ", expected ", *source_size,
-        " bytes; the rewritten file was changed after the run"));
+    return absl::DataLossError(
+        absl::StrCat(path, ": the restored text is not the source: ", size, " bytes with XXH3-128 ",
+                     ToHex(hasher.Value()), ", expected ", *source_size,
+                     " bytes; the rewritten file was changed after the run"));
   }
   return OutputDigest{size, hasher.Value()};
 }

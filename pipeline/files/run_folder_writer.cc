@@ -39,12 +39,14 @@ absl::StatusOr<std::unique_ptr<RunFolderWriter>> RunFolderWriter::Open(FileSyste
     PW_ASSIGN_OR_RETURN(FileInfo manifest, files.Stat(writer->final_ + "/manifest.json"));
     if (!manifest.exists) {
       return absl::InvalidArgumentError(
-          absl::StrCat(writer->final_, ": exists and is no run folder (it has no manifest.json); "
+          absl::StrCat(writer->final_,
+                       ": exists and is no run folder (it has no manifest.json); "
                        "choose another run_folder or move it away"));
     }
     if (!fresh) {
       return absl::InvalidArgumentError(
-          absl::StrCat(writer->final_, ": holds a finished run; `--fresh` replaces it, another "
+          absl::StrCat(writer->final_,
+                       ": holds a finished run; `--fresh` replaces it, another "
                        "run_folder keeps it"));
     }
   }

@@ -23,8 +23,8 @@ class RunFolderWriter {
   RunFolderWriter(const RunFolderWriter&) = delete;
   RunFolderWriter& operator=(const RunFolderWriter&) = delete;
 
-  const std::string& folder() const { return building_; }   // files go here
-  const std::string& scratch() const { return scratch_; }   // gone after Commit() or failure
+  const std::string& folder() const { return building_; }  // files go here
+  const std::string& scratch() const { return scratch_; }  // gone after Commit() or failure
   absl::Status Commit();
 
  private:

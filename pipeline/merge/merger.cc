@@ -20,8 +20,13 @@ class Joiner {
   Joiner(Entry* stream, uint64_t begin, uint64_t end, const SlotRules& rules,
          const std::vector<AcceptedSlot>& accepted, uint32_t word_types,
          const OnSlotChange& on_change)
-      : stream_(stream), begin_(begin), end_(end), rules_(rules), accepted_(accepted),
-        word_types_(word_types), on_change_(on_change) {}
+      : stream_(stream),
+        begin_(begin),
+        end_(end),
+        rules_(rules),
+        accepted_(accepted),
+        word_types_(word_types),
+        on_change_(on_change) {}
 
   void Join(const Link& link) {
     const uint32_t phrase = accepted_[link.rank].phrase;

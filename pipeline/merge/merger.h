@@ -40,7 +40,7 @@ class Merger {
   // Merges in stream[begin, end), which begins and ends with a run. Adds to (*joined)[rank]. Calls
   // on_change, where given, for every slot beside a merge; the merged ones are not reported.
   void Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
-                 const OnSlotChange& on_change) const;
+             const OnSlotChange& on_change) const;
 
  private:
   const SlotRules& rules_;

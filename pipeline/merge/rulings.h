@@ -15,9 +15,9 @@ struct RuledPhrase {
   uint32_t phrase = 0;
 };
 
-// Pass 0: joins every stretch of single-word tokens that spells a ruling, in the order of `rulings`,
-// leftmost first, in stream[begin, end), which begins and ends with a run. Adds to (*joined)[i].
-// `barriers` (may be null): single-word types that end a run.
+// Pass 0: joins every stretch of single-word tokens that spells a ruling, in the order of
+// `rulings`, leftmost first, in stream[begin, end), which begins and ends with a run. Adds to
+// (*joined)[i]. `barriers` (may be null): single-word types that end a run.
 class RulingJoiner {
  public:
   RulingJoiner(const std::vector<RuledPhrase>& rulings, const TypeBits* barriers,

@@ -17,7 +17,7 @@ struct CheckReport {
   std::vector<InputFile> inputs;
   std::vector<uint64_t> sizes;  // of the inputs as stored
   MemoryPlan plan;
-  uint64_t free_bytes = 0;      // where the run folder will be
+  uint64_t free_bytes = 0;  // where the run folder will be
   int lanes = 0;
 };
 

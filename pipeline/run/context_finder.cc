@@ -507,6 +507,7 @@ absl::StatusOr<Findings> Finder::Run(const std::vector<std::string>& function_wo
     return absl::OkStatus();
   };
   PW_RETURN_IF_ERROR(lanes.Pipeline(kBlocksInFlight, steps));
+  findings.whole = findings.whole && !enough_;
   if (findings.whole) findings.digests = source.digests();
   workers_.clear();
   PW_RETURN_IF_ERROR(Finish(function_words, &findings));

@@ -5,6 +5,7 @@
 
 #include "absl/strings/str_cat.h"
 #include "base/status.h"
+#include "base/units.h"
 #include "run/job_options.h"
 
 namespace phraseweld {
@@ -33,8 +34,8 @@ void EncodeBlock(const Block& block, Encoder* encoder, std::vector<Entry>* entri
   for (size_t d = 0; d < block.documents.size(); ++d) {
     const DocumentPart& document = block.documents[d];
     const size_t first = document.first_piece;
-    const size_t last = d + 1 < block.documents.size() ? block.documents[d + 1].first_piece
-                                                        : block.pieces.size();
+    const size_t last =
+        d + 1 < block.documents.size() ? block.documents[d + 1].first_piece : block.pieces.size();
     for (size_t p = first; p < last; ++p) {
       const TextPiece& piece = block.pieces[p];
       encoder->Encode(piece.text, !piece.ends_passage, place, entries);
@@ -75,6 +76,20 @@ absl::Status Renumber(const std::vector<uint32_t>& final_ids, uint64_t chunk, Th
   for (uint64_t tokens : words) corpus->words += tokens;
   for (uint64_t tokens : corpus->frequency) corpus->word_types += tokens > 0 ? 1 : 0;
   return absl::OkStatus();
+}
+
+// What has to be in memory whatever else is on disk: the words, and a few counters for each.
+// Half of the limit is theirs; blocks under way and the steps of counting share the other half.
+absl::Status FitsMemory(const Job& job, const Vocabulary& vocabulary, int lanes) {
+  constexpr uint64_t kMebibyte = uint64_t{1} << 20;
+  const uint64_t words =
+      vocabulary.memory() + uint64_t{vocabulary.size()} * 8 * static_cast<uint64_t>(lanes + 2);
+  const uint64_t least = 2 * words;
+  if (least <= job.limits.memory) return absl::OkStatus();
+  return absl::ResourceExhaustedError(absl::StrCat(
+      "limits.memory: ", FormatBytes(job.limits.memory), " is too little for this corpus; its ",
+      FormatCount(vocabulary.size()), " different words alone take ", RoundedBytes(static_cast<double>(words)),
+      "; ", FormatBytes((least / kMebibyte + 1) * kMebibyte), " would do"));
 }
 
 }  // namespace
@@ -125,6 +140,7 @@ absl::Status EncodeCorpus(const Job& job, const std::vector<InputFile>& inputs,
   workers.clear();
   corpus->digests = source.digests();
   PW_RETURN_IF_ERROR(corpus->entries->Seal(entries));
+  PW_RETURN_IF_ERROR(FitsMemory(job, corpus->vocabulary, lanes.lanes()));
   PW_ASSIGN_OR_RETURN(std::vector<uint32_t> final_ids, corpus->vocabulary.Finish(reserved));
   PW_RETURN_IF_ERROR(Renumber(final_ids, plan.chunk_entries, lanes, corpus));
   corpus->stream.entries = corpus->entries->data();

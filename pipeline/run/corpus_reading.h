@@ -33,7 +33,7 @@ struct EncodedCorpus {
   std::vector<uint64_t> frequency;  // tokens of each word type
   std::vector<InputDigest> digests;
   uint64_t documents = 0;
-  uint64_t words = 0;  // tokens in the stream before any merge
+  uint64_t words = 0;       // tokens in the stream before any merge
   uint64_t word_types = 0;  // with at least one token
   uint64_t bad_lines = 0;
   uint64_t text_bytes = 0;

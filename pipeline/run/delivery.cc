@@ -53,8 +53,8 @@ absl::Status WalkBlock(const WalkOptions& options, const EncodedCorpus& corpus, 
                  &item->output);
   for (size_t d = 0; d < block.documents.size(); ++d) {
     const DocumentPart& document = block.documents[d];
-    const size_t last = d + 1 < block.documents.size() ? block.documents[d + 1].first_piece
-                                                        : block.pieces.size();
+    const size_t last =
+        d + 1 < block.documents.size() ? block.documents[d + 1].first_piece : block.pieces.size();
     if (document.first_piece == last) {
       PW_RETURN_IF_ERROR(walk.EmptyDocument(document.ends));
     }
@@ -91,8 +91,14 @@ class CorpusWriter {
   CorpusWriter(const Job& job, const std::vector<InputFile>& inputs, const std::string& folder,
                FileSystem& files, const EncodedCorpus& corpus, std::string source_joiner,
                Delivery* delivery, std::vector<DeliveredFile>* written)
-      : job_(job), inputs_(inputs), folder_(folder), files_(files), corpus_(corpus),
-        source_joiner_(std::move(source_joiner)), delivery_(delivery), written_(written) {}
+      : job_(job),
+        inputs_(inputs),
+        folder_(folder),
+        files_(files),
+        corpus_(corpus),
+        source_joiner_(std::move(source_joiner)),
+        delivery_(delivery),
+        written_(written) {}
 
   absl::Status Begin() {
     if (!job_.deliver.spans) return absl::OkStatus();
@@ -112,9 +118,8 @@ class CorpusWriter {
     }
     if (spans_ != nullptr) PW_RETURN_IF_ERROR(WriteSpans(block, item.output));
     if (out_ != nullptr) {
-      PW_RETURN_IF_ERROR(out_->Append(job_.deliver.corpus == CorpusForm::kWords
-                                          ? item.output.words
-                                          : item.output.text));
+      PW_RETURN_IF_ERROR(out_->Append(
+          job_.deliver.corpus == CorpusForm::kWords ? item.output.words : item.output.text));
     }
     if (joints_ != nullptr) WriteJoints(block, item.output);
     return block.ends_file ? EndFile(block.file) : absl::OkStatus();
@@ -170,8 +175,8 @@ class CorpusWriter {
     uint64_t at = 0;
     for (const BlockOutput::Joint& joint : output.joints) {
       joints_->Skip(joint.at - at);
-      joints_->Joint(std::string_view(block.bytes)
-                         .substr(joint.gap_begin, joint.gap_end - joint.gap_begin));
+      joints_->Joint(
+          std::string_view(block.bytes).substr(joint.gap_begin, joint.gap_end - joint.gap_begin));
       at = joint.at + source_joiner_.size();
     }
     joints_->Skip(output.text.size() - at);

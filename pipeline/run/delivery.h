@@ -44,9 +44,8 @@ absl::Status DeliverCorpus(const Job& job, const std::vector<InputFile>& inputs,
 
 // Writes audit/ and the inventory into `folder`; returns the inventory.
 absl::StatusOr<std::vector<PhraseRecord>> DeliverRecords(
-    const std::string& folder, FileSystem& files, ThreadLanes& lanes,
-    const EncodedCorpus& corpus, const PassResults& results, const Delivery& delivery,
-    std::vector<DeliveredFile>* written);
+    const std::string& folder, FileSystem& files, ThreadLanes& lanes, const EncodedCorpus& corpus,
+    const PassResults& results, const Delivery& delivery, std::vector<DeliveredFile>* written);
 
 // The name of a document: its id, or its ordinal from 1.
 std::string DocumentName(std::string_view id, uint64_t ordinal);

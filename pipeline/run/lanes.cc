@@ -52,7 +52,8 @@ class ThreadLanes::Arena {
 };
 
 ThreadLanes::ThreadLanes(int threads, const std::atomic<bool>* stop)
-    : lanes_(threads > 0 ? threads : static_cast<int>(std::max(1u, std::thread::hardware_concurrency()))),
+    : lanes_(threads > 0 ? threads
+                         : static_cast<int>(std::max(1u, std::thread::hardware_concurrency()))),
       stop_(stop) {
   arena_ = std::make_unique<Arena>(lanes_);
 }
@@ -63,15 +64,15 @@ absl::Status ThreadLanes::ForEach(size_t count,
                                   const std::function<absl::Status(int, size_t)>& work) {
   FirstError error;
   arena_->arena().execute([&] {
-    tbb::parallel_for(
-        tbb::blocked_range<size_t>(0, count, 1),
-        [&](const tbb::blocked_range<size_t>& range) {
-          const int lane = tbb::this_task_arena::current_thread_index();
-          for (size_t i = range.begin(); i != range.end(); ++i) {
-            if (error.failed() || stopped()) return;
-            if (absl::Status status = work(lane, i); !status.ok()) error.Set(i, std::move(status));
-          }
-        });
+    tbb::parallel_for(tbb::blocked_range<size_t>(0, count, 1),
+                      [&](const tbb::blocked_range<size_t>& range) {
+                        const int lane = tbb::this_task_arena::current_thread_index();
+                        for (size_t i = range.begin(); i != range.end(); ++i) {
+                          if (error.failed() || stopped()) return;
+                          if (absl::Status status = work(lane, i); !status.ok())
+                            error.Set(i, std::move(status));
+                        }
+                      });
   });
   if (error.failed()) return error.status();
   return stopped() ? Interrupted() : absl::OkStatus();

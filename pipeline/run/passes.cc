@@ -30,8 +30,15 @@ class PassLoop {
   PassLoop(const Job& job, const MemoryPlan& plan, const std::string& scratch_folder,
            FileSystem& files, ThreadLanes& lanes, const Observer& observer, Timings* timings,
            EncodedCorpus* corpus, PassResults* results)
-      : job_(job), plan_(plan), scratch_folder_(scratch_folder), files_(files), lanes_(lanes),
-        observer_(observer), timings_(timings), corpus_(*corpus), results_(*results) {}
+      : job_(job),
+        plan_(plan),
+        scratch_folder_(scratch_folder),
+        files_(files),
+        lanes_(lanes),
+        observer_(observer),
+        timings_(timings),
+        corpus_(*corpus),
+        results_(*results) {}
 
   absl::Status Prepare(uint32_t function_types, std::vector<ResolvedRuling> rulings);
   absl::Status JoinRulings();
@@ -85,9 +92,9 @@ class PassLoop {
 absl::Status PassLoop::Prepare(uint32_t function_types, std::vector<ResolvedRuling> rulings) {
   const Vocabulary& vocabulary = corpus_.vocabulary;
   if (!BridgeCodes::Fits(function_types, job_.words.bridge)) {
-    return absl::InvalidArgumentError(
-        absl::StrCat(function_types, " function words are too many for words.bridge: ",
-                     job_.words.bridge, "; a smaller bridge or a shorter list will do"));
+    return absl::InvalidArgumentError(absl::StrCat(
+        function_types, " function words are too many for words.bridge: ", job_.words.bridge,
+        "; a smaller bridge or a shorter list will do"));
   }
   results_.codes = BridgeCodes(function_types, job_.words.bridge);
   results_.types =
@@ -135,7 +142,8 @@ void PassLoop::Adjust(uint32_t type, uint64_t more, uint64_t less) {
 
 // Pass 0: what the rulings say is always joined.
 absl::Status PassLoop::JoinRulings() {
-  // Distinct phrases, longer ones first, then by their text; a phrase is made once whoever rules it.
+  // Distinct phrases, longer ones first, then by their text; a phrase is made once whoever rules
+  // it.
   std::map<std::pair<int64_t, std::vector<std::string>>, size_t> order;
   for (size_t i = 0; i < results_.rulings.size(); ++i) {
     const ResolvedRuling& ruling = results_.rulings[i];
@@ -162,7 +170,8 @@ absl::Status PassLoop::JoinRulings() {
   std::vector<RuledPhrase> phrases;
   for (size_t i : ruling_order) {
     if (!results_.rulings[i].words.empty()) {
-      phrases.push_back({results_.rulings[i].words, results_.types.Intern(results_.rulings[i].words)});
+      phrases.push_back(
+          {results_.rulings[i].words, results_.types.Intern(results_.rulings[i].words)});
     }
   }
   std::vector<std::vector<uint64_t>> joined(static_cast<size_t>(lanes_.lanes()),
@@ -171,9 +180,9 @@ absl::Status PassLoop::JoinRulings() {
   PW_RETURN_IF_ERROR(ForChunks([&](int lane, uint64_t begin, uint64_t end) {
     joiner.Join(corpus_.stream.entries, begin, end, &joined[static_cast<size_t>(lane)]);
   }));
-  PW_ASSIGN_OR_RETURN(std::vector<uint64_t> documents,
-                      CountTypeDocuments(lanes_, corpus_.stream, results_.types.word_types(),
-                                         phrases.size()));
+  PW_ASSIGN_OR_RETURN(
+      std::vector<uint64_t> documents,
+      CountTypeDocuments(lanes_, corpus_.stream, results_.types.word_types(), phrases.size()));
   results_.made.resize(phrases.size(), 0);
   size_t next = 0;
   for (size_t i : ruling_order) {
@@ -240,11 +249,10 @@ absl::StatusOr<Choice> PassLoop::Choose(const PassOptions& options, uint64_t tok
   for (size_t capacity = kNearCapacity;; capacity *= 16) {
     BeginStage("choose");
     Chooser chooser(options, phrase_rules_, results_.rulings.size(), lanes_.lanes(), capacity);
-    PW_RETURN_IF_ERROR(counter_->Visit(
-        lanes_, chooser.least_occurrences(),
-        [&](int lane, const Slot& slot, const SlotTable& table) {
-          chooser.Consider(lane, slot, table);
-        }));
+    PW_RETURN_IF_ERROR(counter_->Visit(lanes_, chooser.least_occurrences(),
+                                       [&](int lane, const Slot& slot, const SlotTable& table) {
+                                         chooser.Consider(lane, slot, table);
+                                       }));
     results_.rounds = std::max(results_.rounds, counter_->rounds());
     std::vector<Candidate> pending = chooser.Pending();
     BeginStage("documents");
@@ -265,7 +273,8 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
   }
   if (results_.types.size() >= std::min<uint64_t>(counter_->type_limit(), kMostTypes)) {
     return absl::ResourceExhaustedError(
-        absl::StrCat("pass ", number_, " makes more phrases than a run can tell apart; a higher "
+        absl::StrCat("pass ", number_,
+                     " makes more phrases than a run can tell apart; a higher "
                      "gate or a `take` keeps them fewer"));
   }
   const SlotIndex index(accepted.size(), results_.types.size(),
@@ -280,8 +289,7 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
         counter_->Change(lane, before, after);
       };
     }
-    merger.Merge(corpus_.stream.entries, begin, end, &joined[static_cast<size_t>(lane)],
-                 on_change);
+    merger.Merge(corpus_.stream.entries, begin, end, &joined[static_cast<size_t>(lane)], on_change);
   }));
   results_.made.resize(results_.types.size() - results_.types.word_types(), 0);
   for (size_t rank = 0; rank < accepted.size(); ++rank) {
@@ -335,7 +343,8 @@ absl::StatusOr<bool> PassLoop::RunPass(const PassOptions& options, bool is_last)
     slot.failed = candidate.failed;
     return slot;
   };
-  for (const Candidate& candidate : choice.accepted) record.accepted.push_back(record_of(candidate));
+  for (const Candidate& candidate : choice.accepted)
+    record.accepted.push_back(record_of(candidate));
   for (const Candidate& candidate : choice.near_misses) {
     record.near_misses.push_back(record_of(candidate));
   }
@@ -392,9 +401,9 @@ absl::StatusOr<std::vector<std::string>> FunctionWordForms(const Job& job) {
     }
   }
   if (!faults.empty()) {
-    return absl::InvalidArgumentError(absl::StrCat("words.function_words: ",
-                                                   job.words.function_words,
-                                                   ": every entry must be one word", faults));
+    return absl::InvalidArgumentError(
+        absl::StrCat("words.function_words: ", job.words.function_words,
+                     ": every entry must be one word", faults));
   }
   std::vector<std::string> distinct;
   for (std::string& form : forms) {
@@ -413,7 +422,8 @@ absl::StatusOr<std::vector<ResolvedRuling>> ResolveRulings(const Job& job) {
     ResolvedRuling resolved;
     resolved.ruling = ruling;
     resolved.forms = FormsOf(job, ruling.phrase);
-    const std::string place = absl::StrCat(ruling.file, ":", ruling.line, ": '", ruling.phrase, "' ");
+    const std::string place =
+        absl::StrCat(ruling.file, ":", ruling.line, ": '", ruling.phrase, "' ");
     if (resolved.forms.size() < 2) {
       absl::StrAppend(&faults, faults.empty() ? "" : "\n", place, "is ",
                       resolved.forms.empty() ? "no word" : "one word",
@@ -424,8 +434,8 @@ absl::StatusOr<std::vector<ResolvedRuling>> ResolveRulings(const Job& job) {
     if (!is_new && other->second->always != ruling.always) {
       absl::StrAppend(&faults, faults.empty() ? "" : "\n", place, "is ruled ",
                       ruling.always ? "always" : "never", " here and ",
-                      other->second->always ? "always" : "never", " in line ",
-                      other->second->line, "; keep one of the two");
+                      other->second->always ? "always" : "never", " in line ", other->second->line,
+                      "; keep one of the two");
       continue;
     }
     if (is_new) rulings.push_back(std::move(resolved));

@@ -27,9 +27,9 @@ struct ResolvedRuling {
 struct PassResults {
   BridgeCodes codes;
   TypeTable types;
-  std::vector<PassRecord> passes;  // in order, pass 0 first where there is one
-  std::vector<uint64_t> frequency; // tokens of each type in the final stream
-  std::vector<uint64_t> made;      // tokens made of each phrase type, by id - word_types
+  std::vector<PassRecord> passes;   // in order, pass 0 first where there is one
+  std::vector<uint64_t> frequency;  // tokens of each type in the final stream
+  std::vector<uint64_t> made;       // tokens made of each phrase type, by id - word_types
   std::vector<ResolvedRuling> rulings;
   uint64_t tokens_out = 0;
   uint64_t scratch_bytes = 0;

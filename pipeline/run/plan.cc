@@ -8,15 +8,16 @@ namespace phraseweld {
 namespace {
 
 // Ratios as measured on English, German and French prose; see DEVELOPERS.md, "Memory".
-constexpr double kBytesPerEntry = 5.4;        // of text, for a word or a mark
-constexpr double kMemoryPerEntry = 21.0;      // stream, counts and their changes, all in memory
-constexpr double kScratchPerEntry = 26.0;     // the same on disk
-constexpr double kCompression = 4.0;          // of .zst and .gz inputs
+constexpr double kBytesPerEntry = 5.4;          // of text, for a word or a mark
+constexpr double kMemoryPerEntry = 21.0;        // stream, counts and their changes, all in memory
+constexpr double kScratchPerEntry = 26.0;       // the same on disk
+constexpr double kCompression = 4.0;            // of .zst and .gz inputs
 constexpr uint64_t kBase = uint64_t{40} << 20;  // program, ICU's tables, caches of the lanes
 
 bool EndsWith(const std::string& text, const char* end) {
   const std::string tail(end);
-  return text.size() >= tail.size() && text.compare(text.size() - tail.size(), tail.size(), tail) == 0;
+  return text.size() >= tail.size() &&
+         text.compare(text.size() - tail.size(), tail.size(), tail) == 0;
 }
 
 }  // namespace
@@ -42,8 +43,8 @@ MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
   for (size_t i = 0; i < inputs.size(); ++i) {
     const bool packed = EndsWith(inputs[i].path, ".zst") || EndsWith(inputs[i].path, ".gz");
     unknown = unknown || packed || inputs[i].path == "-";
-    plan.text_bytes += packed ? static_cast<uint64_t>(static_cast<double>(sizes[i]) * kCompression)
-                              : sizes[i];
+    plan.text_bytes +=
+        packed ? static_cast<uint64_t>(static_cast<double>(sizes[i]) * kCompression) : sizes[i];
   }
   const double text = static_cast<double>(plan.text_bytes);
   plan.entries = static_cast<uint64_t>(text / kBytesPerEntry);
@@ -53,8 +54,8 @@ MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
   // A block in flight costs its bytes, its entries or its rewritten text, and its word places:
   // about five times its size. A quarter of the limit goes to all of them.
   const uint64_t block = limit / 4 / (5 * plan.blocks_in_flight);
-  plan.block_bytes = static_cast<size_t>(
-      std::clamp<uint64_t>(block, uint64_t{64} << 10, uint64_t{1} << 20));
+  plan.block_bytes =
+      static_cast<size_t>(std::clamp<uint64_t>(block, uint64_t{64} << 10, uint64_t{1} << 20));
   const uint64_t blocks = 5 * plan.blocks_in_flight * plan.block_bytes;
   const auto in_memory =
       static_cast<uint64_t>(static_cast<double>(plan.entries) * kMemoryPerEntry) + kBase + blocks;

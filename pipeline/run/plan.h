@@ -16,17 +16,17 @@ namespace phraseweld {
 struct MemoryPlan {
   size_t block_bytes = size_t{1} << 20;  // of text at once
   size_t blocks_in_flight = 6;
-  bool exact_size = true;       // text_bytes is what the inputs hold, not a guess
-  bool on_disk = false;         // the stream and the counts lie in scratch files
-  uint64_t working_bytes = 0;   // on disk: what a counting step may hold
+  bool exact_size = true;                      // text_bytes is what the inputs hold, not a guess
+  bool on_disk = false;                        // the stream and the counts lie in scratch files
+  uint64_t working_bytes = 0;                  // on disk: what a counting step may hold
   uint64_t chunk_entries = uint64_t{1} << 18;  // of the stream at once
   // Estimates.
-  uint64_t text_bytes = 0;      // of the inputs, decompressed; a guess for compressed ones
+  uint64_t text_bytes = 0;  // of the inputs, decompressed; a guess for compressed ones
   uint64_t entries = 0;
-  uint64_t memory_bytes = 0;    // peak
-  uint64_t scratch_bytes = 0;   // on disk while it runs
+  uint64_t memory_bytes = 0;   // peak
+  uint64_t scratch_bytes = 0;  // on disk while it runs
   uint64_t output_bytes = 0;
-  int rounds = 1;               // in which pass 1 resolves margins
+  int rounds = 1;  // in which pass 1 resolves margins
 };
 
 // Sizes of inputs; standard input counts as 0.

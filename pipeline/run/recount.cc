@@ -38,10 +38,10 @@ absl::Status CompareCounts(int pass, Lanes& lanes, SlotCounter* kept, SlotCounte
   }
   for (size_t i = 0; i < of_kept.size(); ++i) {
     if (of_kept[i] == of_fresh[i]) continue;
-    return absl::InternalError(absl::StrCat(
-        "pass ", pass, ": counts of slot type (", std::get<0>(of_fresh[i]), ", ",
-        std::get<1>(of_fresh[i]), ", ", std::get<2>(of_fresh[i]),
-        ") differ between differences and recount"));
+    return absl::InternalError(
+        absl::StrCat("pass ", pass, ": counts of slot type (", std::get<0>(of_fresh[i]), ", ",
+                     std::get<1>(of_fresh[i]), ", ", std::get<2>(of_fresh[i]),
+                     ") differ between differences and recount"));
   }
   return absl::OkStatus();
 }

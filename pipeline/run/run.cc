@@ -51,7 +51,8 @@ RunSummary Summarise(const EncodedCorpus& corpus, const PassResults& results,
   summary.totals.words = corpus.words;
   summary.totals.word_types = corpus.word_types;
   summary.totals.bad_lines = corpus.bad_lines;
-  summary.totals.passes = static_cast<uint64_t>(results.passes.empty() ? 0 : results.passes.back().number);
+  summary.totals.passes =
+      static_cast<uint64_t>(results.passes.empty() ? 0 : results.passes.back().number);
   summary.totals.phrases = phrases.size();
   summary.totals.tokens_out = results.tokens_out;
   for (const PhraseRecord& phrase : phrases) {
@@ -106,11 +107,11 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
   PW_RETURN_IF_ERROR(DeliverCorpus(job, inputs, plan, folder->folder(), files, lanes, observer,
                                    corpus, results, &delivery, &written));
   timings.Begin("records");
-  PW_ASSIGN_OR_RETURN(std::vector<PhraseRecord> phrases,
-                      DeliverRecords(folder->folder(), files, lanes, corpus, results, delivery,
-                                     &written));
-  PW_ASSIGN_OR_RETURN(DeliveredFile job_file, DeliverText(folder->folder(), "job.yaml",
-                                                          WriteJobYaml(job), files));
+  PW_ASSIGN_OR_RETURN(
+      std::vector<PhraseRecord> phrases,
+      DeliverRecords(folder->folder(), files, lanes, corpus, results, delivery, &written));
+  PW_ASSIGN_OR_RETURN(DeliveredFile job_file,
+                      DeliverText(folder->folder(), "job.yaml", WriteJobYaml(job), files));
   written.push_back(job_file);
   RunSummary summary = Summarise(corpus, results, phrases);
   timings.End();
@@ -121,8 +122,7 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
                          .status());
   PW_RETURN_IF_ERROR(folder->Commit());
   summary.run_folder = job.run_folder;
-  summary.seconds =
-      std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();
+  summary.seconds = std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();
   return summary;
 }
 

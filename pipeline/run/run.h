@@ -25,15 +25,15 @@ struct RunSummary {
   std::vector<std::string> warnings;          // rulings without effect, lines kept though bad
   std::string run_folder;
   double seconds = 0;
-  uint64_t scratch_bytes = 0;                 // at the most, on disk beside the results
+  uint64_t scratch_bytes = 0;  // at the most, on disk beside the results
   int rounds = 0;
 };
 
 struct RunControls {
-  bool fresh = false;           // replace a finished run
-  uint64_t block_bytes = 0;     // of text at once; 0: as the memory plan has it (tests set it)
-  uint64_t chunk_entries = 0;   // the same for the stream
-  bool force_disk = false;      // keep stream and counts in scratch files whatever the size
+  bool fresh = false;          // replace a finished run
+  uint64_t block_bytes = 0;    // of text at once; 0: as the memory plan has it (tests set it)
+  uint64_t chunk_entries = 0;  // the same for the stream
+  bool force_disk = false;     // keep stream and counts in scratch files whatever the size
 };
 
 // Runs a job: reads the corpus, carries out the passes, delivers. The run folder appears whole when

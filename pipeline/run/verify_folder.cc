@@ -24,6 +24,7 @@ constexpr std::string_view kReport = "report.html";  // may be made long after t
 absl::StatusOr<bool> CheckDigest(const FolderCheck& check, const std::string& path, uint64_t bytes,
                                  std::string_view hash, uint64_t* done) {
   const uint64_t before = *done;
+  const std::string listed = Concat(" as in ", InFolder(check, kManifest));
   const auto digest = [&]() -> absl::StatusOr<OutputDigest> {
     PW_ASSIGN_OR_RETURN(const FileInfo info, check.files.Stat(path));
     if (!info.exists || info.is_directory) {
@@ -50,11 +51,12 @@ absl::StatusOr<bool> CheckDigest(const FolderCheck& check, const std::string& pa
     return false;
   }
   if (digest->bytes != bytes) {
-    check.faults->Add(path, "size", Concat(digest->bytes, " bytes"), Concat(bytes, " bytes"));
+    check.faults->Add(path, "size", Concat(digest->bytes, " bytes"),
+                      Concat(bytes, " bytes", listed));
     return false;
   }
   if (ToHex(digest->hash) != hash) {
-    check.faults->Add(path, "XXH3-128", ToHex(digest->hash), hash);
+    check.faults->Add(path, "XXH3-128", ToHex(digest->hash), Concat(hash, listed));
     return false;
   }
   return true;

@@ -152,13 +152,13 @@ class PassCheck {
     }
     head += "}}";
     for (size_t i = 0; i < accepted_.size(); ++i) {
-      lines.push_back(SlotLine("accepted", i + 1, accepted_[i], std::nullopt));
+      lines.push_back(SlotLine("accepted", RankOf(log_.accepted, i), accepted_[i], std::nullopt));
     }
     for (size_t i = 0; i < near_misses_.size(); ++i) {
       const JudgedSlot& slot = near_misses_[i];
       const std::optional<Quantity> failed =
           slot.failed.empty() ? log_.near_misses[i].failed : slot.failed.front();
-      lines.push_back(SlotLine("near_miss", i + 1, slot, failed));
+      lines.push_back(SlotLine("near_miss", RankOf(log_.near_misses, i), slot, failed));
     }
     std::string& balance = lines.emplace_back("{\"kind\":\"balance\"");
     AppendCount(&balance, "pass", number_);
@@ -169,6 +169,11 @@ class PassCheck {
     AppendCount(&balance, "tokens_out", recount_.tokens_out);
     balance += '}';
     return lines;
+  }
+
+  // Ranks count from 1. Where a line is missing that is one fault, not one for each line after it.
+  static uint64_t RankOf(const std::vector<RunSlot>& slots, size_t i) {
+    return i == 0 ? 1 : slots[i - 1].rank + 1;
   }
 
   std::string SlotLine(std::string_view kind, uint64_t rank, const JudgedSlot& slot,

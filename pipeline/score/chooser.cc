@@ -49,9 +49,11 @@ bool RankOrder::operator()(const Candidate& a, const Candidate& b) const {
   return WordsBefore(*types_, WordsOf(*types_, a.slot.right), WordsOf(*types_, b.slot.right));
 }
 
-Chooser::Chooser(const PassOptions& pass, const PhraseRules& rules, size_t never_rulings,
-                 int lanes, size_t near_capacity)
-    : pass_(pass), rules_(rules), order_(*rules.types, *rules.codes),
+Chooser::Chooser(const PassOptions& pass, const PhraseRules& rules, size_t never_rulings, int lanes,
+                 size_t near_capacity)
+    : pass_(pass),
+      rules_(rules),
+      order_(*rules.types, *rules.codes),
       near_capacity_(near_capacity) {
   for (const Gate& gate : pass.accept) {
     const double least = std::ceil(gate.least);
@@ -155,8 +157,8 @@ std::optional<Choice> Chooser::Choose(std::vector<Candidate> pending) const {
   if (pass_.take && choice.accepted.size() > *pass_.take) choice.accepted.resize(*pass_.take);
   std::sort(choice.near_misses.begin(), choice.near_misses.end(), order_);
   if (choice.near_misses.size() > kMostNearMisses) choice.near_misses.resize(kMostNearMisses);
-  if (bound_ && (choice.near_misses.size() < kMostNearMisses ||
-                 order_(*bound_, choice.near_misses.back()))) {
+  if (bound_ &&
+      (choice.near_misses.size() < kMostNearMisses || order_(*bound_, choice.near_misses.back()))) {
     return std::nullopt;
   }
   choice.never_used.resize(lanes_.front().never_used.size());

@@ -30,9 +30,9 @@ struct PhraseRules {
 struct Candidate {
   Slot slot;
   SlotTable table;
-  double score = 0;             // of rank_by
+  double score = 0;                // of rank_by
   std::optional<Quantity> failed;  // the one gate that turned it away; not known to be final yet
-  uint64_t first = 0;           // stream position of its first slot
+  uint64_t first = 0;              // stream position of its first slot
 };
 
 // The one total order among slot types: score, n, text, left side's text, bridge's text, and then

@@ -38,7 +38,7 @@ Job RandomJobs::NextJob() {
   job.corpus.bad_lines = Chance(50) ? BadLines::kKeep : BadLines::kStop;
   job.words.fold = static_cast<Fold>(Below(3));
   job.words.strip_accents = Chance(30);
-  job.words.hyphens = Chance(70) ? Hyphens::kJoin : Hyphens::kBreak;
+  job.words.hyphens = Chance(70) ? Hyphens::kJoin : Hyphens::kSeparate;
   job.words.numbers = static_cast<Numbers>(Below(3));
   if (Chance(60)) {
     job.words.function_words = "list";

@@ -7,6 +7,10 @@ namespace {
 
 constexpr double kRateSpread = 100;  // the most frequent phrase against the rarest
 
+// "Of the" is itself a thousandth of the text. A phrase that took a large share of it would have a
+// small PMI, for each bridge has a contingency table of its own.
+constexpr double kRateSpreadOfLongBridges = 15;
+
 // Of 20 phrases 10 have two words, 5 three, 3 four and 2 five.
 size_t DrawLength(uint64_t bits) {
   const uint64_t twentieth = bits % 20;
@@ -23,6 +27,7 @@ PlantedPhrases::PlantedPhrases(size_t count, Random& random) {
   while (phrases_.size() < count) {
     const uint64_t bits = random.Next();
     const size_t length = DrawLength(bits >> 32);
+    double spread = kRateSpread;
     PlantedPhrase phrase{PlantedPhrase::Kind::kPlain, {}, (bits & 3) == 0};
     const bool after_plain =
         !phrases_.empty() && phrases_.back().kind == PlantedPhrase::Kind::kPlain;
@@ -35,14 +40,15 @@ PlantedPhrases::PlantedPhrases(size_t count, Random& random) {
       if (place == 0 && phrase.kind == PlantedPhrase::Kind::kShared) {
         phrase.words.push_back(phrases_.back().words.front());
       } else if (place == 1 && phrase.kind == PlantedPhrase::Kind::kBridged) {
-        phrase.words.emplace_back(kBridges[bits >> 8 & 3]);
+        phrase.words.emplace_back(length > 3 ? "of" : kBridges[bits >> 8 & 3]);
       } else if (place == 2 && length > 3 && phrase.kind == PlantedPhrase::Kind::kBridged) {
         phrase.words.emplace_back("the");
+        spread = kRateSpreadOfLongBridges;
       } else {
         phrase.words.push_back("qu" + WordSource::InventWord(reserved++));
       }
     }
-    const auto tickets = static_cast<size_t>(std::pow(kRateSpread, random.Unit()));
+    const auto tickets = static_cast<size_t>(std::pow(spread, random.Unit()));
     draws_.insert(draws_.end(), tickets, static_cast<uint32_t>(phrases_.size()));
     phrases_.push_back(std::move(phrase));
   }

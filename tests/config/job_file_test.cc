@@ -71,7 +71,7 @@ debug: {recount: true}
   EXPECT_EQ(job.corpus.bad_lines, BadLines::kKeep);
   EXPECT_EQ(job.words.fold, Fold::kCase);
   EXPECT_TRUE(job.words.strip_accents);
-  EXPECT_EQ(job.words.hyphens, Hyphens::kBreak);
+  EXPECT_EQ(job.words.hyphens, Hyphens::kSeparate);
   EXPECT_EQ(job.words.numbers, Numbers::kNowhere);
   EXPECT_THAT(job.words.function_word_list, ElementsAre("of"));
   EXPECT_EQ(job.words.bridge, 3);

@@ -30,7 +30,7 @@ TEST(Gaps, Breaks) {
                                 " \u3164 "}) {
     EXPECT_EQ(Joined("x a" + gap + "b x"), "x a" + gap + "b x") << testing::PrintToString(gap);
   }
-  EXPECT_EQ(Joined("a-b", Hyphens::kBreak), "a-b");
+  EXPECT_EQ(Joined("a-b", Hyphens::kSeparate), "a-b");
   EXPECT_EQ(Joined(std::string("a\0b a b", 7)), std::string("a\0b a_b", 7));
 }
 

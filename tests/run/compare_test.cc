@@ -188,7 +188,7 @@ TEST_F(CompareTest, WhatNoLogTellsIsPutDownToTheCorpusOrTheKeys) {
   const std::string text = Times(6, "mooring line");
   EXPECT_EQ(Lost(Changed(LinesJob(), LinesJob(), text), "tide gauge").absence, Absence::kCorpus);
   Job broken = LinesJob();
-  broken.words.hyphens = Hyphens::kBreak;
+  broken.words.hyphens = Hyphens::kSeparate;
   const std::string hyphens = Times(4, "tide-gauge");
   const OneSidedPhrase keys =
       Lost(Compare(Put("a", LinesJob(), hyphens), Put("b", broken, hyphens)), "tide gauge");

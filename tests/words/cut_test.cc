@@ -22,11 +22,15 @@ TEST(Cuts, AreAllowedBeforeWordsOfEveryScript) {
 }
 
 TEST(Cuts, AreRefusedWhereNoWordCertainlyBegins) {
-  for (const char* text :
-       {"", " a", "-a", "_ a", ".5 ", "\u0301a ", "\u200D\u24C2a ", "\u115F ",
-        "\xFF"
-        "a",
-        "a\xFF", "'s ", "a\u200D\U0001F600 ", "\uAC00\u0308 ", "\u3000a ", "\n", "unfinished"}) {
+  for (const char* text : {"", " a", "-a", "_ a", ".5 ", "\u0301a ", "\u200D\u24C2a ", "\u115F ",
+                           "\xFF"
+                           "a",
+                           "a\xFF", "'s ", "a\u200D\U0001F600 ", "\uAC00\u0308 ",
+                           "\u0903\u200D\u24C2"
+                           "a ",
+                           "\u3000\u200D\u24C2"
+                           "a ",
+                           "\u3000a ", "\n", "unfinished"}) {
     EXPECT_FALSE(StartsWord(text)) << text;
   }
   EXPECT_FALSE(StartsWord(std::string(5000, 'a') + " "));

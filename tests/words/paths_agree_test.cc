@@ -174,6 +174,18 @@ TEST(PathsAgree, WhereverABlockOfSixtyFourBytesEnds) {
   }
 }
 
+TEST(PathsAgree, WhereverTheBufferIsFull) {
+  // The last word of a buffer may turn out to go on behind a full stop.
+  Streams streams;
+  std::string words;
+  for (int count = 0; count < 700; ++count) {
+    for (const char* end : {"b.\u03B1", "b.\u03B1 ", "b'\u2019", "1.\u0661", "\u03B1.\u03B1"}) {
+      ASSERT_TRUE(streams.AllGiveWhatIcuGives(words + end)) << count;
+    }
+    words += "a ";
+  }
+}
+
 TEST(PathsAgree, WhenAccentsAreStripped) {
   WordOptions options;
   options.strip_accents = true;

@@ -119,17 +119,14 @@ std::string Show(std::string_view text, const std::vector<WordSpan>& words) {
 
 const std::vector<std::string>& Representatives() {
   static const std::vector<std::string>& pieces = *new std::vector<std::string>{
-      "a",          "1",        "_",      ".",        "'",
-      ",",          " ",        "\n",     "-",        "\"",
-      ":",          "@",        "\u00E9", "\u0436",   "\u00D7",
-      "\u0300",     "\u200D",   "\u00AD", "\u05D0",   "\u30AB",
-      "\u3042",     "\u4E00",   "\u3005", "\uAC00",   "\u0E01",
-      "\u0E31",     "\u2019",   "\u00B7", "\u066C",   "\u0661",
-      "\u203F",     "\u3000",   "\u0085", "\u24C2",   "\U0001F600",
-      "\U0001F1E6", "\u115F",   "\u30FC", "\u03B1",   "\xFF",
-      "\xC3",       "\xE2\x80", "\r",     "\u102B",   "\u2E80",
-      "\u3031",     "\u200B",   "\u19DA", "\u07FA",   "\U00016FE4",
-      "Z",          ";",        "\t",     "\xF0\x9F", std::string(1, '\0'),
+      "a",          "1",          "_",      ".",      "'",      ",",        " ",
+      "\n",         "-",          "\"",     ":",      "@",      "\u00E9",   "\u0436",
+      "\u00D7",     "\u0300",     "\u200D", "\u00AD", "\u05D0", "\u30AB",   "\u3042",
+      "\u4E00",     "\u3005",     "\uAC00", "\u0E01", "\u0E31", "\u2019",   "\u00B7",
+      "\u066C",     "\u0661",     "\u203F", "\u3000", "\u0085", "\u24C2",   "\U0001F600",
+      "\U0001F1E6", "\u115F",     "\u30FC", "\u03B1", "\xFF",   "\xC3",     "\xE2\x80",
+      "\r",         "\u102B",     "\u2E80", "\u3031", "\u200B", "\u19DA",   "\u00F7",
+      "\u07FA",     "\U00016FE4", "Z",      ";",      "\t",     "\xF0\x9F", std::string(1, '\0'),
   };
   return pieces;
 }
