@@ -124,7 +124,7 @@ class BlockParser::Impl {
         } else if (keep_bad_lines_) {
           ++block->bad_lines;
         } else {
-          return absl::InvalidArgumentError(absl::StrCat(
+          return absl::DataLossError(absl::StrCat(
               inputs_[block->file].path, ": line ", block->first_line + line, " (from byte ",
               block->file_offset + begin, ") is not a JSON object: ", fault,
               " Mend the line, or set corpus.bad_lines: keep to pass such lines through."));

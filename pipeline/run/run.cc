@@ -11,6 +11,7 @@
 #include "run/manifest.h"
 #include "run/passes.h"
 #include "run/plan.h"
+#include "run/report.h"
 
 namespace phraseweld {
 namespace {
@@ -114,12 +115,26 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
                       DeliverText(folder->folder(), "job.yaml", WriteJobYaml(job), files));
   written.push_back(job_file);
   RunSummary summary = Summarise(corpus, results, phrases);
-  timings.End();
-  PW_RETURN_IF_ERROR(DeliverText(folder->folder(), "manifest.json",
-                                 ManifestJson(job, named, corpus.digests, std::move(written),
-                                              summary.totals, timings.seconds()),
-                                 files)
-                         .status());
+  const auto deliver_manifest = [&] {
+    timings.End();
+    return DeliverText(folder->folder(), "manifest.json",
+                       ManifestJson(job, named, corpus.digests, written, summary.totals,
+                                    timings.seconds()),
+                       files)
+        .status();
+  };
+  PW_RETURN_IF_ERROR(deliver_manifest());
+  if (job.deliver.report) {
+    // The page is made from the run folder like any later one, and then listed in it.
+    timings.Begin("report");
+    observer.stage({0, "", "report", 0, ""});
+    const std::string page = "report.html";
+    PW_ASSIGN_OR_RETURN(WrittenReport report,
+                        WriteReport(files, folder->folder(), inputs, folder->folder() + "/" + page,
+                                    lanes, observer));
+    written.push_back({page, report.digest});
+    PW_RETURN_IF_ERROR(deliver_manifest());
+  }
   PW_RETURN_IF_ERROR(folder->Commit());
   summary.run_folder = job.run_folder;
   summary.seconds = std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();

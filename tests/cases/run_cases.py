@@ -82,7 +82,7 @@ def main():
             kept = [s for s in sections if s[0] not in actual]
             old = dict((k, v) for k, v in sections)
             with open(path, "w", encoding="utf-8") as f:
-                for key, text in kept + [[k, v if not matches(old.get(k, ""), v) else old[k]]
+                for key, text in kept + [[k, old[k] if k in old and matches(old[k], v) else v]
                                          for k, v in actual.items()]:
                     f.write(f"=== {key}\n{text}")
             continue

@@ -251,7 +251,7 @@ TEST_F(GradeTest, PassOneIsThatOfTheReference) {
 
 TEST_F(GradeTest, TheAnswerIsTheSameWithTheStreamOnDisk) {
   FinishedRun run = Load(Put(LinesJob(), RandomLines(10, 600)));
-  run.job.limits.memory = 1;
+  run.job.limits.memory = uint64_t{4} << 20;  // less than a stream in memory would take
   std::unique_ptr<SourceRecount> source = Recount(run);
   EXPECT_TRUE(folder_.Has("scratch"));
   const auto pairs = source->FrequentPairs(10);

@@ -297,10 +297,10 @@ TEST_F(VerifyTest, AChangedByteOfTheSourceIsFoundWithItsPlace) {
   const size_t at = text.find("left bank light seen");
   changed[at] = 'L';
   folder_.Put("in/a.txt", changed);
-  EXPECT_THAT(Faults(), AllOf(HasSubstr(Concat(folder_.Path("in/a.txt"), ": XXH3-128: found ")),
-                              HasSubstr(Concat("corpus/a.txt: undone, it is not ",
-                                               folder_.Path("in/a.txt"), " from byte ", at,
-                                               " (line 1): found \"left))));
+  EXPECT_THAT(Faults(),
+              AllOf(HasSubstr(Concat(folder_.Path("in/a.txt"), ": XXH3-128: found ")),
+                    HasSubstr(Concat("corpus/a.txt: undone, it is not ", folder_.Path("in/a.txt"),
+                                     " from byte ", at, " (line 1): found \"left"))));
   folder_.Put("in/a.txt", text + "x");
   EXPECT_THAT(Faults(), HasSubstr(Concat(folder_.Path("in/a.txt"), ": size: found ",
                                          text.size() + 1, " bytes, expected ", text.size())));
