@@ -72,8 +72,8 @@ for part in "$@"; do
   # shellcheck disable=SC2086
   if ! (cd "$scratch/$part/packages" && apt-get -qq -o APT::Sandbox::User=root download $packages)
   then
-    echo "fetch-real-text.sh: apt-get could not download $packages; run \"apt-get update\" as root" \
-      "and try again" >&2
+    echo "fetch-real-text.sh: apt-get could not download $packages;" \
+      "run \"apt-get update\" as root and try again" >&2
     exit 1
   fi
   for package in "$scratch/$part/packages"/*.deb; do

@@ -19,8 +19,9 @@ DIGITS = {character: value for value, character in enumerate(
 
 # Elements whose text is no running text, and those that end a paragraph.
 UNREAD = {"script", "style", "head", "header", "nav", "aside", "footer", "button", "svg"}
-BLOCKS = {"p", "div", "h1", "h2", "h3", "h4", "h5", "h6", "li", "ul", "ol", "dl", "dt", "dd", "table",
-          "tr", "td", "th", "pre", "blockquote", "section", "article", "body", "hr", "caption"}
+BLOCKS = {"p", "div", "h1", "h2", "h3", "h4", "h5", "h6", "li", "ul", "ol", "dl", "dt", "dd",
+          "table", "tr", "td", "th", "pre", "blockquote", "section", "article", "body", "hr",
+          "caption"}
 
 
 def read(path):
@@ -58,7 +59,7 @@ def join_texts(texts):
 
 
 class Paragraphs(html.parser.HTMLParser):
-    """The text of a page, a paragraph an element that a browser would start on a line of its own."""
+    """The text of a page, a paragraph an element that a browser starts on a new line."""
 
     def __init__(self):
         super().__init__(convert_charrefs=True)
@@ -123,7 +124,7 @@ def from_base64(text):
 
 
 def lay_out_dictionary(tree, folder, name):
-    """A dictd dictionary: an entry a line, named by its first headword in the order of the index."""
+    """A dictd dictionary: an entry a line, named by its first headword in the index."""
     base = os.path.join(tree, "usr/share/dictd", name)
     with gzip.open(base + ".dict.dz") as file:
         data = file.read()
@@ -174,7 +175,8 @@ def lay_out_lists(tree, folder):
     write_list(os.path.join(folder, "wordnet-nouns.txt"),
                (lemma.replace("_", " ") for lemma in lemmas if "_" in lemma))
     compounds = read(os.path.join(tree, "usr/share/dict/web2a.gz")).splitlines()
-    write_list(os.path.join(folder, "web2a.txt"), (line.strip() for line in compounds if line.strip()))
+    write_list(os.path.join(folder, "web2a.txt"),
+               (line.strip() for line in compounds if line.strip()))
 
 
 def lay_out_languages(tree, folder):

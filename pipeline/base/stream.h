@@ -27,6 +27,7 @@ struct StreamView {
     while (cuts.back() < size) {
       uint64_t at = std::min(size, cuts.back() + std::max<uint64_t>(aim, 1));
       while (at < size && !IsMark(entries[at - 1])) ++at;
+      release(cuts.back(), at);
       cuts.push_back(at);
     }
   }

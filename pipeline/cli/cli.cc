@@ -6,7 +6,9 @@
 #include <CLI/CLI.hpp>
 #include <algorithm>
 #include <cstdlib>
+#include <exception>
 #include <iostream>
+#include <new>
 #include <string_view>
 #include <utility>
 
@@ -195,7 +197,15 @@ int Main(int argc, char** argv) {
   // A terminal that calls itself dumb cannot go back in a line.
   const bool capable = terminal != nullptr && std::string_view(terminal) != "dumb";
   Console console{&std::cout, &std::cerr, capable && isatty(STDERR_FILENO) == 1, TerminalWidth};
-  return RunCommandLine({argv + std::min(argc, 1), argv + argc}, ProgramHandlers(), console);
+  try {
+    return RunCommandLine({argv + std::min(argc, 1), argv + argc}, ProgramHandlers(), console);
+  } catch (const std::bad_alloc&) {
+    std::cerr << "phraseweld: out of memory; a smaller limits.memory keeps more on disk\n";
+  } catch (const std::exception& failure) {
+    // Only a library that is broken or missing its data throws this far.
+    std::cerr << "phraseweld: a library failed: " << failure.what() << "\n";
+  }
+  return kExitFailed;
 }
 
 }  // namespace phraseweld

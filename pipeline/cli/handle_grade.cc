@@ -33,6 +33,7 @@ absl::Status HandleGrade(const GradeArguments& arguments, Console& console) {
       Grade(FileSystem::Posix(), arguments.run_folder, arguments.list_file, options, observer);
   progress.Clear();
   PW_RETURN_IF_ERROR(report.status());
+  for (const std::string& note : report->notes) *console.err << "note: " << note << "\n";
   *console.out << (arguments.json ? GradeJson(*report) : GradeText(*report, kMissesShown));
   return absl::OkStatus();
 }

@@ -1,7 +1,7 @@
 #include "base/status.h"
 #include "cli/handle_run.h"
-#include "deliver/joints.h"
-#include "files/streams.h"
+#include "files/file_system.h"
+#include "phraseweld/phraseweld.h"
 
 namespace phraseweld {
 
@@ -9,11 +9,11 @@ absl::Status HandleRestore(const RestoreArguments& arguments, Console& console) 
   FileSystem& files = FileSystem::Posix();
   if (arguments.output.empty()) {
     PW_RETURN_IF_ERROR(
-        RestoreFile(files, arguments.file, [&](std::string_view bytes) {
+        Restore(arguments.file, [&](std::string_view bytes) {
           console.out->write(bytes.data(), static_cast<std::streamsize>(bytes.size()));
           return console.out->good() ? absl::OkStatus()
                                      : absl::UnavailableError("cannot write to standard output");
-        }).status());
+        }));
     console.out->flush();
     return absl::OkStatus();
   }
@@ -21,9 +21,9 @@ absl::Status HandleRestore(const RestoreArguments& arguments, Console& console) 
   const std::string partial = arguments.output + ".partial";
   absl::Status status = [&]() -> absl::Status {
     PW_ASSIGN_OR_RETURN(std::unique_ptr<WriteFile> out, files.CreateWrite(partial));
-    PW_RETURN_IF_ERROR(RestoreFile(files, arguments.file, [&](std::string_view bytes) {
+    PW_RETURN_IF_ERROR(Restore(arguments.file, [&](std::string_view bytes) {
                          return out->Append(bytes);
-                       }).status());
+                       }));
     PW_RETURN_IF_ERROR(out->Sync());
     PW_RETURN_IF_ERROR(out->Close());
     return files.Rename(partial, arguments.output);

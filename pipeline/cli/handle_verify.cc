@@ -1,5 +1,8 @@
 #include "cli/handle_verify.h"
 
+#include <string>
+#include <string_view>
+
 #include "base/status.h"
 #include "base/strings.h"
 #include "base/units.h"
@@ -9,22 +12,27 @@
 namespace phraseweld {
 namespace {
 
+// "1 pass", "2,000 passes".
+std::string Counted(uint64_t count, std::string_view one, std::string_view more) {
+  return Concat(FormatCount(count), " ", count == 1 ? one : more);
+}
+
 std::string Summary(const VerifyReport& report, const std::string& folder) {
+  const auto size = [](uint64_t bytes) { return RoundedBytes(static_cast<double>(bytes)); };
   std::string text =
-      Concat("files       ", FormatCount(report.files), ", ",
-             RoundedBytes(static_cast<double>(report.file_bytes)), ", sizes and hashes as listed\n",
-             "sources     ", FormatCount(report.inputs), ", ",
-             RoundedBytes(static_cast<double>(report.text_bytes)), ", unchanged since the run\n");
+      Concat("files       ", FormatCount(report.files), ", ", size(report.file_bytes),
+             ", sizes and hashes as listed\nsources     ", FormatCount(report.inputs), ", ",
+             size(report.text_bytes), ", unchanged since the run\n");
   if (report.restored > 0) {
-    AppendTo(&text, "restored    ", FormatCount(report.restored),
-             " rewritten files, equal to their sources byte for byte\n");
+    AppendTo(&text, "restored    ", Counted(report.restored, "rewritten file", "rewritten files"),
+             ", equal to the source byte for byte\n");
   }
-  AppendTo(&text, "recounted   ", FormatCount(report.documents), " documents, ",
-           FormatCount(report.words), " words, ", FormatCount(report.passes), " passes\n",
-           "audit       ", FormatCount(report.accepted), " accepted types and ",
-           FormatCount(report.near_misses), " near misses, ", FormatCount(report.merges),
-           " merges\n", "inventory   ", FormatCount(report.phrases), " phrases\n", "proved      ",
-           folder, "\n");
+  AppendTo(&text, "recounted   ", Counted(report.documents, "document", "documents"), ", ",
+           Counted(report.words, "word", "words"), ", ", Counted(report.passes, "pass", "passes"),
+           "\naudit       ", Counted(report.accepted, "accepted type", "accepted types"), ", ",
+           Counted(report.near_misses, "near miss", "near misses"), ", ",
+           Counted(report.merges, "merge", "merges"), "\ninventory   ",
+           Counted(report.phrases, "phrase", "phrases"), "\nproved      ", folder, "\n");
   return text;
 }
 

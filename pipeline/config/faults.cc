@@ -66,7 +66,7 @@ const Source* Faults::AddSource(std::string label, std::string text, bool has_li
   return &sources_.back();
 }
 
-void Faults::Add(const Place& place, std::string message) {
+void Faults::Add(const FaultPlace& place, std::string message) {
   faults_.push_back({place, std::move(message)});
 }
 

@@ -20,7 +20,7 @@ struct Source {
 };
 
 // A place in a source. Line 0 stands for the source as a whole.
-struct Place {
+struct FaultPlace {
   const Source* source = nullptr;
   size_t line = 0;         // from 1
   size_t byte_column = 0;  // from 0
@@ -32,7 +32,7 @@ class Faults {
   // The source lives as long as this object.
   const Source* AddSource(std::string label, std::string text, bool has_lines);
 
-  void Add(const Place& place, std::string message);
+  void Add(const FaultPlace& place, std::string message);
 
   bool empty() const { return faults_.empty(); }
 
@@ -43,7 +43,7 @@ class Faults {
 
  private:
   struct Fault {
-    Place place;
+    FaultPlace place;
     std::string message;
   };
   std::deque<Source> sources_;

@@ -39,7 +39,7 @@ std::vector<std::string> Words(const Source* source, Faults* faults) {
 }  // namespace
 
 std::vector<std::string> ReadFunctionWords(FileSystem& files, const std::string& name,
-                                           const Place& named_at, Faults* faults) {
+                                           const FaultPlace& named_at, Faults* faults) {
   std::vector<std::string_view> known = {"none"};
   if (name == "none") return {};
   for (const BuiltInFunctionWords& list : BuiltInFunctionWordLists()) {

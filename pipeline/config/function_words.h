@@ -25,7 +25,7 @@ absl::Span<const BuiltInFunctionWords> BuiltInFunctionWordLists();
 // comment; blank lines mean nothing; words come as written. Everything wrong becomes a fault, in
 // the list or at `named_at`.
 std::vector<std::string> ReadFunctionWords(FileSystem& files, const std::string& name,
-                                           const Place& named_at, Faults* faults);
+                                           const FaultPlace& named_at, Faults* faults);
 
 }  // namespace phraseweld
 

@@ -41,7 +41,7 @@ std::string Stem(const std::string& path) {
   return dot == std::string::npos || dot == 0 ? name : name.substr(0, dot);
 }
 
-void FillDependentDefaults(const std::string& path, const Place& whole, Job* job, Faults* faults) {
+void FillDependentDefaults(const std::string& path, const FaultPlace& whole, Job* job, Faults* faults) {
   if (job->job.empty()) {
     job->job = Stem(path);
     const Key& key = JobKeys().front();

@@ -353,7 +353,7 @@ class JobReader {
   JobPlaces* places_;
   Job job_;
   bool files_given_ = false;
-  Place files_place_;
+  FaultPlace files_place_;
 };
 
 }  // namespace

@@ -9,8 +9,8 @@ namespace phraseweld {
 
 // Places that later checks point at.
 struct JobPlaces {
-  Place function_words;
-  Place rulings;
+  FaultPlace function_words;
+  FaultPlace rulings;
 };
 
 // The job that the tree `root` says, defaults included, by the table of keys. Everything wrong

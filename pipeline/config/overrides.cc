@@ -12,7 +12,7 @@ namespace {
 
 using Parts = absl::Span<const std::string_view>;
 
-std::shared_ptr<YamlNode> NewNode(YamlNode::Kind kind, const Place& place) {
+std::shared_ptr<YamlNode> NewNode(YamlNode::Kind kind, const FaultPlace& place) {
   auto node = std::make_shared<YamlNode>();
   node->kind = kind;
   node->place = place;

@@ -92,7 +92,7 @@ std::optional<Ruling> ReadEntry(const YamlNode& entry, const std::string& path, 
 
 }  // namespace
 
-std::vector<Ruling> ReadRulings(FileSystem& files, const std::string& path, const Place& named_at,
+std::vector<Ruling> ReadRulings(FileSystem& files, const std::string& path, const FaultPlace& named_at,
                                 Faults* faults) {
   auto text = ReadWhole(files, path);
   if (!text.ok()) {

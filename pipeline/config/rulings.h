@@ -15,7 +15,7 @@ namespace phraseweld {
 // wrong becomes a fault; a file that cannot be read, one at `named_at`. The same text ruled both
 // ways is refused; texts are compared here by ASCII case folding and with runs of white space as
 // one space, and by the job's own word forms when it runs.
-std::vector<Ruling> ReadRulings(FileSystem& files, const std::string& path, const Place& named_at,
+std::vector<Ruling> ReadRulings(FileSystem& files, const std::string& path, const FaultPlace& named_at,
                                 Faults* faults);
 
 }  // namespace phraseweld

@@ -22,7 +22,7 @@ constexpr size_t kShownText = 60;  // columns of a value that a message repeats
 
 // yaml-cpp takes lines to end in LF and counts lines and columns, in bytes, from 0. It leaves out
 // a byte-order mark.
-Place PlaceOf(const Source* source, const YAML::Mark& mark) {
+FaultPlace PlaceOf(const Source* source, const YAML::Mark& mark) {
   if (mark.is_null()) return {source, 1, 0};
   size_t column = static_cast<size_t>(mark.column);
   if (mark.line == 0 && source->text.starts_with(kByteOrderMark)) {
@@ -31,7 +31,7 @@ Place PlaceOf(const Source* source, const YAML::Mark& mark) {
   return {source, static_cast<size_t>(mark.line) + 1, column};
 }
 
-Place PlaceOfByte(const Source* source, size_t offset) {
+FaultPlace PlaceOfByte(const Source* source, size_t offset) {
   const std::string_view before = std::string_view(source->text).substr(0, offset);
   const size_t line_end = before.rfind('\n');
   const size_t line_start = line_end == std::string_view::npos ? 0 : line_end + 1;
@@ -72,7 +72,7 @@ class TreeBuilder : public YAML::EventHandler {
 
   const YamlNodePtr& root() const { return root_; }
   bool failed() const { return failed_; }
-  const std::optional<Place>& start() const { return start_; }
+  const std::optional<FaultPlace>& start() const { return start_; }
 
   void OnDocumentStart(const YAML::Mark& mark) override { start_ = PlaceOf(source_, mark); }
   void OnDocumentEnd() override {}
@@ -128,7 +128,7 @@ class TreeBuilder : public YAML::EventHandler {
     return node;
   }
 
-  void Fail(const Place& place, std::string message) {
+  void Fail(const FaultPlace& place, std::string message) {
     faults_->Add(place, std::move(message));
     failed_ = true;
   }
@@ -195,14 +195,14 @@ class TreeBuilder : public YAML::EventHandler {
   std::string_view text_;
   Faults* faults_;
   YamlNodePtr root_;
-  std::optional<Place> start_;
+  std::optional<FaultPlace> start_;
   bool failed_ = false;
   std::vector<Open> open_;
   std::map<YAML::anchor_t, YamlNodePtr> anchors_;
 };
 
 // What people most often did when the parser says `message`.
-std::string_view Hint(const Place& place, std::string_view message) {
+std::string_view Hint(const FaultPlace& place, std::string_view message) {
   std::string_view line = place.source->text;
   for (size_t number = 1; number < place.line; ++number) line.remove_prefix(line.find('\n') + 1);
   line = line.substr(0, line.find('\n'));
@@ -250,7 +250,7 @@ YamlNodePtr ParseYaml(const Source* source, Faults* faults) {
     parser.HandleNextDocument(second);
   } catch (const YAML::Exception& error) {
     if (document.failed()) return nullptr;  // a missing quote is the cause of what follows
-    const Place place = PlaceOf(source, error.mark);
+    const FaultPlace place = PlaceOf(source, error.mark);
     faults->Add(place, Concat("not YAML: ", error.msg, Hint(place, error.msg)));
     return nullptr;
   }

@@ -21,7 +21,7 @@ using YamlNodePtr = std::shared_ptr<const YamlNode>;
 struct YamlNode {
   enum class Kind { kNull, kScalar, kList, kMap };
   Kind kind = Kind::kNull;
-  Place place;
+  FaultPlace place;
   std::string text;                                          // kScalar
   std::vector<YamlNodePtr> items;                            // kList
   std::vector<std::pair<YamlNodePtr, YamlNodePtr>> entries;  // kMap: key, value

@@ -9,7 +9,7 @@
 namespace phraseweld {
 
 // Rows that a list of phrases shows at most; a browser takes seconds over many more.
-inline constexpr size_t kMostComparedRows = 5000;
+inline constexpr size_t kMostComparedRows = 2000;
 
 // A comparison as one HTML file that loads nothing from anywhere, the same bytes for the same data.
 // All texts are escaped; a byte outside well-formed UTF-8 is shown as U+FFFD. It can be read whole

@@ -3,6 +3,7 @@
 #include <sys/mman.h>
 #include <unistd.h>
 
+#include <algorithm>
 #include <cerrno>
 #include <cstring>
 
@@ -68,10 +69,12 @@ absl::Status EntryArray::Seal(uint64_t size) {
 
 void EntryArray::Release(uint64_t begin, uint64_t end) {
   if (scratch_ == nullptr || begin >= end) return;
-  constexpr uint64_t kPage = 4096;
-  // Whole pages only; the ones at the ends may still be in use by a neighbour.
-  const uint64_t from = (begin * sizeof(Entry) + kPage - 1) / kPage * kPage;
-  const uint64_t to = end * sizeof(Entry) / kPage * kPage;
+  // A fault maps some pages around the one that was asked for, also of a range given back before.
+  // Giving back a neighbour's page that is in use costs it another fault, and nothing else.
+  constexpr uint64_t kPage = 4096, kAround = uint64_t{128} << 10;
+  const uint64_t first = begin * sizeof(Entry), last = end * sizeof(Entry);
+  const uint64_t from = (first - std::min(first, kAround)) / kPage * kPage;
+  const uint64_t to = std::min(mapped_bytes_, last + kAround) / kPage * kPage;
   if (from < to) madvise(reinterpret_cast<char*>(data_) + from, to - from, MADV_DONTNEED);
 }
 

@@ -254,7 +254,36 @@ absl::Status ReadInventory(FileSystem& files, const std::string& path,
   }
 }
 
-absl::StatusOr<RunData> ReadRunFolder(FileSystem& files, const std::string& run) {
+namespace {
+
+absl::Status ReadPass(FileSystem& files, const std::string& log, RunPass* pass) {
+  PassLogReader reader;
+  reader.on_head = [pass](const RunPassHead& head) {
+    pass->head = head;
+    return absl::OkStatus();
+  };
+  reader.on_ruled = [pass](RunRuled& ruled) {
+    pass->ruled.push_back(ruled);
+    return absl::OkStatus();
+  };
+  reader.on_accepted = [pass](RunSlot& slot) {
+    pass->accepted.push_back(std::move(slot));
+    return absl::OkStatus();
+  };
+  reader.on_near_miss = [pass](RunSlot& slot) {
+    pass->near_misses.push_back(std::move(slot));
+    return absl::OkStatus();
+  };
+  reader.on_balance = [pass](const RunBalance& balance) {
+    pass->balance = balance;
+    return absl::OkStatus();
+  };
+  return ReadPassLog(files, log, reader);
+}
+
+}  // namespace
+
+absl::StatusOr<RunData> ReadRunFolder(FileSystem& files, const std::string& run, Lanes& lanes) {
   PW_ASSIGN_OR_RETURN(const FileInfo info, files.Stat(run));
   if (!info.exists || !info.is_directory) {
     return absl::NotFoundError(Concat(run, ": there is no such run folder"));
@@ -263,37 +292,20 @@ absl::StatusOr<RunData> ReadRunFolder(FileSystem& files, const std::string& run)
   data.folder = run;
   PW_ASSIGN_OR_RETURN(data.manifest, ReadManifest(files, Concat(run, "/manifest.json")));
   PW_ASSIGN_OR_RETURN(const std::vector<std::string> logs, ListPassLogs(files, run));
-  for (const std::string& log : logs) {
-    RunPass& pass = data.passes.emplace_back();
-    PassLogReader reader;
-    reader.on_head = [&pass](const RunPassHead& head) {
-      pass.head = head;
+  data.passes.resize(logs.size());
+  PW_RETURN_IF_ERROR(lanes.ForEach(logs.size() + 1, [&](int, size_t i) {
+    if (i < logs.size()) return ReadPass(files, logs[i], &data.passes[i]);
+    return ReadInventory(files, Concat(run, "/inventory.jsonl"), [&data](RunPhrase& phrase) {
+      data.phrases.push_back(std::move(phrase));
       return absl::OkStatus();
-    };
-    reader.on_ruled = [&pass](RunRuled& ruled) {
-      pass.ruled.push_back(ruled);
-      return absl::OkStatus();
-    };
-    reader.on_accepted = [&pass](RunSlot& slot) {
-      pass.accepted.push_back(std::move(slot));
-      return absl::OkStatus();
-    };
-    reader.on_near_miss = [&pass](RunSlot& slot) {
-      pass.near_misses.push_back(std::move(slot));
-      return absl::OkStatus();
-    };
-    reader.on_balance = [&pass](const RunBalance& balance) {
-      pass.balance = balance;
-      return absl::OkStatus();
-    };
-    PW_RETURN_IF_ERROR(ReadPassLog(files, log, reader));
-  }
-  PW_RETURN_IF_ERROR(
-      ReadInventory(files, Concat(run, "/inventory.jsonl"), [&data](RunPhrase& phrase) {
-        data.phrases.push_back(std::move(phrase));
-        return absl::OkStatus();
-      }));
+    });
+  }));
   return data;
+}
+
+absl::StatusOr<RunData> ReadRunFolder(FileSystem& files, const std::string& run) {
+  SerialLanes lanes;
+  return ReadRunFolder(files, run, lanes);
 }
 
 }  // namespace phraseweld

@@ -6,6 +6,7 @@
 #include <vector>
 
 #include "absl/status/statusor.h"
+#include "base/parallel.h"
 #include "base/run_data.h"
 #include "files/file_system.h"
 
@@ -37,7 +38,8 @@ absl::Status ReadInventory(FileSystem& files, const std::string& path,
 
 absl::StatusOr<RunManifest> ReadManifest(FileSystem& files, const std::string& path);
 
-// All of it. Takes memory of about twice the files' size.
+// All of it, file beside file on `lanes`. Takes memory of about twice the files' size.
+absl::StatusOr<RunData> ReadRunFolder(FileSystem& files, const std::string& run, Lanes& lanes);
 absl::StatusOr<RunData> ReadRunFolder(FileSystem& files, const std::string& run);
 
 }  // namespace phraseweld

@@ -45,8 +45,14 @@ double FinishedRun::Value(const RunSlot& slot, Quantity quantity) {
 }
 
 absl::StatusOr<FinishedRun> LoadFinishedRun(FileSystem& files, const std::string& folder) {
+  SerialLanes lanes;
+  return LoadFinishedRun(files, folder, lanes);
+}
+
+absl::StatusOr<FinishedRun> LoadFinishedRun(FileSystem& files, const std::string& folder,
+                                            Lanes& lanes) {
   FinishedRun run;
-  PW_ASSIGN_OR_RETURN(run.data, ReadRunFolder(files, folder));
+  PW_ASSIGN_OR_RETURN(run.data, ReadRunFolder(files, folder, lanes));
   PW_ASSIGN_OR_RETURN(run.job, LoadJob(files, Concat(folder, "/job.yaml"), {}));
   PW_RETURN_IF_ERROR(AssignOptions(&run));
   for (size_t i = 0; i < run.options.size(); ++i) {

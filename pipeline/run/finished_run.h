@@ -7,6 +7,7 @@
 #include "absl/container/flat_hash_map.h"
 #include "absl/status/statusor.h"
 #include "base/job.h"
+#include "base/parallel.h"
 #include "base/run_data.h"
 #include "files/file_system.h"
 
@@ -25,6 +26,8 @@ struct FinishedRun {
 
 // Reads a run folder and its job.yaml, whose lists of function words and rulings are read from
 // where the job found them. Any thread.
+absl::StatusOr<FinishedRun> LoadFinishedRun(FileSystem& files, const std::string& folder,
+                                            Lanes& lanes);
 absl::StatusOr<FinishedRun> LoadFinishedRun(FileSystem& files, const std::string& folder);
 
 // Where the audit of a run speaks of a phrase. Points into the run, which must stay.

@@ -236,6 +236,7 @@ absl::StatusOr<GradeReport> Grade(FileSystem& files, const std::string& run,
   GradeReport report;
   report.run = run;
   report.list = list;
+  report.notes = source->notes();
   PW_RETURN_IF_ERROR(Grader(finished, known, &report).Do(options, source.get()));
   return report;
 }

@@ -82,7 +82,8 @@ struct GradeReport {
   std::vector<GradeRanking> rankings;       // by every quantity
   std::vector<GradePool> pools;
   uint64_t missed = 0;
-  std::vector<GradeMiss> misses;  // most occurrences first, then in byte order
+  std::vector<GradeMiss> misses;   // most occurrences first, then in byte order
+  std::vector<std::string> notes;  // remarks on where the source came from
 
   double Recall() const;     // 0 where nothing is in reach
   double Precision() const;  // 0 where the inventory is empty

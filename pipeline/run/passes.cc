@@ -10,6 +10,7 @@
 #include "audit/pass_log.h"
 #include "base/slot_index.h"
 #include "base/status.h"
+#include "base/units.h"
 #include "count/documents.h"
 #include "count/slot_counter.h"
 #include "merge/merger.h"
@@ -51,6 +52,7 @@ class PassLoop {
   absl::StatusOr<Choice> Choose(const PassOptions& options, uint64_t tokens);
   absl::Status FillDocuments(std::vector<Candidate>* pending);
   absl::Status MergeAccepted(PassRecord* record, bool count_changes);
+  absl::Status PhrasesFitMemory(size_t accepted);
   void Adjust(uint32_t type, uint64_t more, uint64_t less);
   void BeginStage(const char* name) {
     timings_->Begin(absl::StrCat("pass ", number_, " ", name));
@@ -84,6 +86,7 @@ class PassLoop {
   PhraseRules phrase_rules_;
   std::unique_ptr<SlotCounter> counter_;
   uint64_t tokens_ = 0, types_ = 0;
+  uint64_t phrase_bytes_ = 0;
   int number_ = 0;
   std::string name_;
   std::atomic<uint64_t> done_{0};
@@ -309,6 +312,21 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
   return absl::OkStatus();
 }
 
+// Half of the limit is for words and phrases, which have to be in memory whatever is on disk.
+absl::Status PassLoop::PhrasesFitMemory(size_t accepted) {
+  // A record, its places in the indexes, its text, its derivation, and where it first stands.
+  constexpr uint64_t kPhraseBytes = 420;
+  phrase_bytes_ += accepted * kPhraseBytes;
+  const uint64_t least = 2 * (phrase_bytes_ + corpus_.vocabulary.memory());
+  if (!plan_.on_disk || least <= job_.limits.memory) return absl::OkStatus();
+  constexpr uint64_t kMebibyte = uint64_t{1} << 20;
+  return absl::ResourceExhaustedError(absl::StrCat(
+      "limits.memory: ", FormatBytes(job_.limits.memory), " is too little for what pass ", number_,
+      " accepts: with its ", FormatCount(accepted), " phrases ",
+      FormatBytes((least / kMebibyte + 1) * kMebibyte),
+      " would do up to here; higher gates or a `take` make fewer phrases"));
+}
+
 absl::StatusOr<bool> PassLoop::RunPass(const PassOptions& options, bool is_last) {
   ++number_;
   name_ = options.name;
@@ -349,6 +367,7 @@ absl::StatusOr<bool> PassLoop::RunPass(const PassOptions& options, bool is_last)
     record.near_misses.push_back(record_of(candidate));
   }
   const bool any = !record.accepted.empty();
+  PW_RETURN_IF_ERROR(PhrasesFitMemory(record.accepted.size()));
   if (any) PW_RETURN_IF_ERROR(MergeAccepted(&record, !is_last));
   timings_->End();
   record.tokens_out = tokens_;

@@ -170,7 +170,7 @@ PageData ReportData(const FinishedRun& run) {
 absl::StatusOr<WrittenReport> WriteReport(FileSystem& files, const std::string& folder,
                                           std::vector<InputFile> inputs, const std::string& output,
                                           ThreadLanes& lanes, const Observer& observer) {
-  PW_ASSIGN_OR_RETURN(const FinishedRun run, LoadFinishedRun(files, folder));
+  PW_ASSIGN_OR_RETURN(const FinishedRun run, LoadFinishedRun(files, folder, lanes));
   WrittenReport report;
   PageData page = ReportData(run);
   std::unique_ptr<RunSource> source;

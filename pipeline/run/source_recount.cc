@@ -14,35 +14,6 @@
 namespace phraseweld {
 namespace {
 
-absl::Status CheckSource(FileSystem& files, const RunManifest& manifest) {
-  for (const RunInput& input : manifest.inputs) {
-    if (input.path == "-") {
-      return absl::FailedPreconditionError(
-          "the run read standard input, which cannot be counted again; run the job on a file");
-    }
-    PW_ASSIGN_OR_RETURN(const FileInfo info, files.Stat(input.path));
-    if (!info.exists) {
-      return absl::FailedPreconditionError(
-          Concat(input.path,
-                 ": this input of the run is not there; its source is needed, from the "
-                 "working directory in which the job was run"));
-    }
-  }
-  return absl::OkStatus();
-}
-
-absl::Status CheckDigests(const RunManifest& manifest, const std::vector<InputDigest>& digests) {
-  for (size_t i = 0; i < manifest.inputs.size(); ++i) {
-    if (ToHex(digests[i].stored_hash) != manifest.inputs[i].xxh3_128) {
-      return absl::FailedPreconditionError(
-          Concat(manifest.inputs[i].path,
-                 ": this input has changed since the run; put the old one "
-                 "back or run the job anew"));
-    }
-  }
-  return absl::OkStatus();
-}
-
 // Sequences of words as a tree, one word a branch.
 class SequenceTree {
  public:
@@ -95,11 +66,10 @@ absl::StatusOr<std::unique_ptr<SourceRecount>> SourceRecount::Read(
     FileSystem& files, const FinishedRun& run, const std::string& scratch_folder,
     const Observer& observer) {
   std::unique_ptr<SourceRecount> recount(new SourceRecount(files, run, scratch_folder));
-  PW_RETURN_IF_ERROR(CheckSource(files, run.data.manifest));
-  std::vector<InputFile> inputs;
-  for (const RunInput& input : run.data.manifest.inputs) {
-    inputs.push_back({input.path, input.name});
-  }
+  PW_ASSIGN_OR_RETURN(
+      recount->source_,
+      RunSource::Open(files, run, Concat(scratch_folder, ".source"), recount->lanes_));
+  const std::vector<InputFile>& inputs = recount->source_->inputs();
   PW_ASSIGN_OR_RETURN(const std::vector<uint64_t> sizes, InputSizes(files, inputs));
   recount->plan_ = PlanMemory(run.job, inputs, sizes, recount->lanes_.lanes(), RunControls{});
   if (recount->plan_.on_disk) PW_RETURN_IF_ERROR(files.MakeDirectories(scratch_folder));
@@ -108,7 +78,10 @@ absl::StatusOr<std::unique_ptr<SourceRecount>> SourceRecount::Read(
   observer.stage({0, "", "read", recount->plan_.text_bytes, "bytes"});
   PW_RETURN_IF_ERROR(EncodeCorpus(run.job, inputs, recount->plan_, recount->function_words_,
                                   scratch_folder, files, recount->lanes_, observer, &corpus));
-  PW_RETURN_IF_ERROR(CheckDigests(run.data.manifest, corpus.digests));
+  if (const std::string fault = recount->source_->CheckDigests(corpus.digests); !fault.empty()) {
+    return absl::FailedPreconditionError(
+        Concat(fault, "; put the old input back or run the job anew"));
+  }
   recount->numbers_.Resize(corpus.vocabulary.size());
   for (uint32_t word = 0; word < corpus.vocabulary.size(); ++word) {
     if (corpus.vocabulary.is_number(word)) recount->numbers_.Set(word);
@@ -173,7 +146,8 @@ absl::StatusOr<std::unique_ptr<SlotCounter>> SourceRecount::NewCounter(const Slo
     stream.release(stream.cuts[i], stream.cuts[i + 1]);
     return absl::OkStatus();
   }));
-  PW_RETURN_IF_ERROR(counter->Update(lanes_, std::max(corpus_->vocabulary.size(), results_.types.size())));
+  PW_RETURN_IF_ERROR(
+      counter->Update(lanes_, std::max(corpus_->vocabulary.size(), results_.types.size())));
   return counter;
 }
 

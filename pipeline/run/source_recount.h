@@ -20,6 +20,7 @@
 #include "run/observer.h"
 #include "run/passes.h"
 #include "run/plan.h"
+#include "run/run_source.h"
 
 namespace phraseweld {
 
@@ -44,13 +45,15 @@ struct RecountedSlot {
 // made when it is needed and removed in the end. One thread at a time.
 class SourceRecount {
  public:
-  // FailedPrecondition where the source can no longer be read as it was: it was standard input, or
-  // an input is gone or has changed.
+  // FailedPrecondition where the source can no longer be had as it was (see RunSource).
   static absl::StatusOr<std::unique_ptr<SourceRecount>> Read(FileSystem& files,
                                                              const FinishedRun& run,
                                                              const std::string& scratch_folder,
                                                              const Observer& observer);
   ~SourceRecount();
+
+  // Remarks for the user on where the source came from, a sentence each without a full stop.
+  const std::vector<std::string>& notes() const { return source_->notes(); }
 
   // One scan of the stream. Sequences have a word each at least and differ from one another.
   void Count(std::vector<SequenceCount>* sequences) const;
@@ -81,6 +84,7 @@ class SourceRecount {
   const FinishedRun& run_;
   const std::string scratch_folder_;
   ThreadLanes lanes_;
+  std::unique_ptr<RunSource> source_;
   MemoryPlan plan_;
   std::vector<std::string> function_words_;
   std::unique_ptr<EncodedCorpus> corpus_;

@@ -76,13 +76,13 @@ std::vector<std::string> FormsOfText(const std::string& text) {
 class Tracer {
  public:
   Tracer(FileSystem& files, const FinishedRun& run, std::vector<std::string> forms,
-         const Observer& observer, Trace* trace)
+         ThreadLanes& lanes, const Observer& observer, Trace* trace)
       : files_(files),
         run_(run),
         forms_(std::move(forms)),
         observer_(observer),
         trails_(run, forms_),
-        lanes_(run.job.limits.threads, observer.stop),
+        lanes_(lanes),
         trace_(*trace) {}
 
   absl::Status Run() {
@@ -164,13 +164,16 @@ class Tracer {
       options.keep.push_back(forms_);
       options.keep_all = splits.WantsAll();
       std::vector<std::vector<std::string>> words;
-      for (const std::string& form : forms_) words.push_back({form});
+      for (const TracePart& part : trace_.parts) {
+        if (part.word && !part.function_word) words.push_back({part.text});
+      }
       PW_ASSIGN_OR_RETURN(Findings findings, Find(options, std::move(words)));
       splits.UseNumbers(findings.runs->vocabulary);
-      for (size_t i = 0; i < forms_.size(); ++i) {
-        trace_.parts[i].times = findings.phrases[i + 1].occurrences;
-        if (trace_.parts[i].times > 0) continue;
-        AppendTo(&absent, absent.empty() ? "'" : ", '", forms_[i], "'");
+      size_t word = 0;
+      for (TracePart& part : trace_.parts) {
+        if (!part.word || part.function_word) continue;
+        part.times = findings.phrases[++word].occurrences;
+        if (part.times == 0) AppendTo(&absent, absent.empty() ? "'" : ", '", part.text, "'");
       }
       PW_ASSIGN_OR_RETURN(const Replay replay,
                           ReplayRun(run_, findings.runs.get(), splits.Watched(), forms_));
@@ -198,7 +201,7 @@ class Tracer {
   const std::vector<std::string> forms_;
   const Observer& observer_;
   const PartTrails trails_;
-  ThreadLanes lanes_;
+  ThreadLanes& lanes_;
   Trace& trace_;
   std::unique_ptr<RunSource> source_;
 };
@@ -207,7 +210,8 @@ class Tracer {
 
 absl::StatusOr<Trace> TracePhrase(FileSystem& files, const std::string& folder,
                                   const std::string& phrase, const Observer& observer) {
-  PW_ASSIGN_OR_RETURN(const FinishedRun run, LoadFinishedRun(files, folder));
+  ThreadLanes lanes(0, observer.stop);
+  PW_ASSIGN_OR_RETURN(const FinishedRun run, LoadFinishedRun(files, folder, lanes));
   std::vector<std::string> forms = FormsOf(run.job, phrase);
   if (forms.size() < 2) {
     return absl::InvalidArgumentError(
@@ -215,7 +219,7 @@ absl::StatusOr<Trace> TracePhrase(FileSystem& files, const std::string& folder,
                " by the rules of this run; a phrase has two words or more"));
   }
   Trace trace;
-  PW_RETURN_IF_ERROR(Tracer(files, run, std::move(forms), observer, &trace).Run());
+  PW_RETURN_IF_ERROR(Tracer(files, run, std::move(forms), lanes, observer, &trace).Run());
   return trace;
 }
 

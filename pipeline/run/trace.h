@@ -78,7 +78,7 @@ struct TracePart {
   bool word = false;
   bool function_word = false;
   std::optional<int> pass;  // a part that was made: in which pass first
-  uint64_t times = 0;       // a part: made; a word: in the source, where that was read
+  uint64_t times = 0;       // a part: made; a content word: in the source, where it was read
 };
 
 struct Trace {

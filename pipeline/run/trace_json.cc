@@ -145,7 +145,7 @@ std::string TraceJson(const Trace& trace) {
         AppendBool(&out, "made", part.pass.has_value());
       }
       if (part.pass) AppendCount(&out, "pass", *part.pass);
-      AppendCount(&out, "times", part.times);
+      if (!part.function_word) AppendCount(&out, "times", part.times);
       out += '}';
     });
     AppendList(&out, "splits", trace.splits, [&out](const TraceSplit& split) {

@@ -85,8 +85,9 @@ void AppendParts(std::string* out, const Trace& trace) {
   for (const TracePart& part : trace.parts) {
     AppendTo(out, "  ", Quoted(part.text), ": ");
     if (part.word) {
-      AppendTo(out, part.function_word ? "a function word" : "a word",
-               trace.counted ? Concat(", ", Times(part.times)) : "", "\n");
+      *out += part.function_word ? "a function word\n"
+              : trace.counted    ? Concat("a word, ", Times(part.times), "\n")
+                                 : "a word\n";
     } else if (part.pass) {
       AppendTo(out, "made in pass ", *part.pass, ", ", Times(part.times), "\n");
     } else {

@@ -31,9 +31,9 @@ struct VerifyReport {
 //    score follows from those numbers, and every line meets the gates and rules of its pass;
 //  - the inventory, the rewritten corpus, the corpus as words and the spans are those that follow.
 // What is not proved: `slot_types`, which would need memory that grows with the corpus; that no
-// type was left out of the audit that should stand there; and `version` and `timings` of the
-// manifest. Paths of sources, of a list of function words and of rulings that are relative are seen
-// from the working directory, as the run saw them.
+// type was left out of the audit that should stand there; `version` and `timings` of the manifest;
+// and of report.html more than its hash. Paths of sources, of a list of function words and of
+// rulings that are relative are seen from the working directory, as the run saw them.
 //
 // DataLoss, with a line for each of the first 20 faults (file, place, what was found, what was
 // expected), where anything is wrong; NotFound where there is no finished run; Cancelled when

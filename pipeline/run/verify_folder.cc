@@ -29,7 +29,8 @@ absl::StatusOr<bool> CheckDigest(const FolderCheck& check, const std::string& pa
     PW_ASSIGN_OR_RETURN(const FileInfo info, check.files.Stat(path));
     if (!info.exists || info.is_directory) {
       return absl::NotFoundError(Concat(path, ": ", info.exists ? "a folder" : "nothing",
-                                        " stands where the manifest has a file (seen from ",
+                                        " stands where ", InFolder(check, kManifest),
+                                        " has a file (seen from ",
                                         std::filesystem::current_path().string(), ")"));
     }
     PW_ASSIGN_OR_RETURN(const std::unique_ptr<ReadFile> file, check.files.OpenRead(path));

@@ -6,7 +6,7 @@
 #include <unicode/utf8.h>
 
 #include <algorithm>
-#include <cstdlib>
+#include <stdexcept>
 
 #include "absl/strings/str_replace.h"
 #include "words/ascii.h"
@@ -18,7 +18,7 @@ namespace {
 using Normalizer = const icu::Normalizer2* (*)(UErrorCode&);
 
 void Require(UErrorCode error) {
-  if (U_FAILURE(error)) std::abort();  // ICU's data is part of its library; no answer without it
+  if (U_FAILURE(error)) throw std::runtime_error(u_errorName(error));  // ICU's data is part of its library; no answer without it
 }
 
 std::string Normalize(Normalizer instance, std::string_view text) {

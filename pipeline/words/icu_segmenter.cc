@@ -6,7 +6,7 @@
 #include <unicode/utf16.h>
 #include <unicode/utf8.h>
 
-#include <cstdlib>
+#include <stdexcept>
 
 namespace phraseweld {
 namespace {
@@ -14,7 +14,7 @@ namespace {
 // ICU's root rules are compiled into its data library: a failure here is a broken installation or
 // the end of memory, and there is no answer to give.
 void Require(UErrorCode error) {
-  if (U_FAILURE(error)) std::abort();
+  if (U_FAILURE(error)) throw std::runtime_error(u_errorName(error));
 }
 
 }  // namespace

@@ -4,6 +4,8 @@
 
 #include <gtest/gtest.h>
 
+#include <cstdlib>
+#include <filesystem>
 #include <string>
 #include <vector>
 
@@ -38,6 +40,8 @@ void PutLists(const TempFolder& folder, Job* job) {
 }
 
 TEST(VerifyAgreement, EveryRandomRunIsProved) {
+  // Seconds of syncing would drown the test; a folder in memory has nothing to sync.
+  if (std::filesystem::exists("/dev/shm")) setenv("TMPDIR", "/dev/shm", 1);
   RandomJobs random(20);
   int proved = 0;
   uint64_t merges = 0;
@@ -51,7 +55,9 @@ TEST(VerifyAgreement, EveryRandomRunIsProved) {
     }
     PutLists(folder, &job);
     const auto summary = RunJob(job, RunControls{}, FileSystem::Posix(), Observer{});
-    if (absl::IsInvalidArgument(summary.status())) continue;  // a line that is no object
+    const bool may_stop =
+        job.corpus.layout == Layout::kJsonLines && job.corpus.bad_lines == BadLines::kStop;
+    if (!summary.ok() && may_stop) continue;  // at a line that is no object
     ASSERT_TRUE(summary.ok()) << summary.status();
     const auto report = VerifyRun(FileSystem::Posix(), job.run_folder, Observer{});
     ASSERT_TRUE(report.ok()) << "job " << i << ":\n"

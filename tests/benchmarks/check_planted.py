@@ -3,13 +3,14 @@
 
 Usage: check_planted.py RUN PLANTED
 
-RUN is a run folder whose job read one file of corpus_maker, with `function_words: english`, `bridge`
-of 2 or more and a `longest` of 5 or more; PLANTED is the list that corpus_maker wrote. Demanded are:
+RUN is a run folder whose job read one file of corpus_maker, with `function_words: english`,
+`bridge` of 2 or more and a `longest` of 5 or more; PLANTED is the list that corpus_maker wrote.
+Demanded are:
 
   words      the first pass begins with as many tokens as words were made;
-  pairs      each planted phrase of two words that pass 1 accepted was counted exactly: n and documents;
-  made       no phrase was made more often than it was planted, and one that was made less often lost
-             the rest to an overlapping phrase, as its derivations' `yielded` says;
+  pairs      each planted phrase of two words that pass 1 accepted has its exact n and documents;
+  made       no phrase was made more often than it was planted, and one that was made less often
+             lost the rest to an overlapping phrase, as its derivations' `yielded` says;
   recall     of the phrases planted as often as the strictest gates ask, at least 99 % were made.
 
 The exit status is 1 when one of these fails.
@@ -73,7 +74,8 @@ def check(run, planted_path):
              if counted != (planted[phrase]["times"], planted[phrase]["documents"])]
     for phrase, (slots, documents) in wrong:
         faults.append(f"\"{phrase}\" was planted {planted[phrase]['times']} times in "
-                      f"{planted[phrase]['documents']} documents; pass 1 counted {slots} in {documents}")
+                      f"{planted[phrase]['documents']} documents; "
+                      f"pass 1 counted {slots} in {documents}")
     print(f"pairs      {len(audit.pairs) - len(wrong)} of {len(audit.pairs)} counted exactly")
 
     exact = 0

@@ -1,10 +1,11 @@
-// The single pass that an analytical SQL engine makes over a text file: split into lower-case words at
-// blanks, count words and adjacent pairs within a line, PMI of the pairs that occur 8 times or more.
+// The single pass that an analytical SQL engine makes over a text file: split into lower-case words
+// at blanks, count words and adjacent pairs within a line, PMI of the pairs that occur 8 times or
+// more.
 //
 //   node duckdb_pairs.mjs FILE THREADS
 //
-// Nothing is merged, written or explained. Splitting at blanks is the quickest way there is; splitting
-// at whatever is no letter or digit, as a word rule would, takes about a sixth longer.
+// Nothing is merged, written or explained. Splitting at blanks is the quickest way there is;
+// splitting at whatever is no letter or digit, as a word rule would, takes about a sixth longer.
 import { createRequire } from 'node:module';
 import { pathToFileURL } from 'node:url';
 

@@ -2,7 +2,8 @@
 """Measures the program against what a person would use instead, and against itself.
 
 Called by run.sh, which builds the program and fetches the text; see there for the settings.
-Ratios are of medians of alternating runs of whole processes with the input in memory.
+Ratios are of medians of alternating runs of whole processes with the input in memory. A peak below
+some 25 MiB is this script's own, which a process starts from.
 """
 
 import argparse
@@ -112,7 +113,8 @@ def measure_whole(settings):
     others = []
     if settings.duckdb:
         others.append(runner.Measured(
-            "DuckDB, one pass", ["node", os.path.join(settings.here, "duckdb_pairs.mjs"), text, "2"],
+            "DuckDB, one pass",
+            ["node", os.path.join(settings.here, "duckdb_pairs.mjs"), text, "2"],
             folder=settings.duckdb))
     counts = os.path.join(settings.work, "words.txt")
     others.append(runner.Measured(
@@ -167,7 +169,7 @@ def measure_threads(settings):
     one, two = (jobs[threads].stage_seconds() for threads in (1, 2))
     for stage in one:
         if one[stage] > 0.02 * sum(one.values()):
-            row("  " + stage, f"{two[stage]:.3f}", f"{one[stage] / max(two[stage], 1e-9):.2f}", "", "")
+            row("  " + stage, f"{two[stage]:.3f}", f"{one[stage] / max(two[stage], 1e-9):.2f}")
     return [job.record() for job in jobs.values()]
 
 
@@ -228,7 +230,7 @@ def measure_memory(settings):
 def measure_languages(settings):
     """The same number of bytes in five languages, no function words."""
     names = {"en": "English", "de": "German", "fr": "French", "vi": "Vietnamese", "zh": "Chinese"}
-    texts = corpora.cut_languages(settings, names)
+    texts = {name: os.path.join(settings.work, name + ".txt") for name in corpora.LANGUAGES}
     jobs = {name: Job(settings, "language-" + name, path, "paragraphs", function_words="none")
             for name, path in texts.items()}
     for path in texts.values():
@@ -255,7 +257,7 @@ def parse():
     parser.add_argument("--maker", required=True)
     parser.add_argument("--text", required=True, help="the folder of fetch-real-text.sh")
     parser.add_argument("--work", required=True, help="a folder for corpora and runs")
-    parser.add_argument("--duckdb", default="", help="a folder with the npm package; empty: without")
+    parser.add_argument("--duckdb", default="", help="a folder with the npm package")
     parser.add_argument("--results", required=True)
     parser.add_argument("--repeats", type=int, default=5)
     parser.add_argument("--memory-repeats", type=int, default=5)
@@ -272,13 +274,18 @@ def parse():
 
 def main():
     settings = parse()
-    settings.english = corpora.join_english(settings)
-    records = {}
+    subprocess.run([sys.executable, "-B", os.path.join(settings.here, "corpora.py"), settings.text,
+                    settings.work], check=True)
+    settings.english = os.path.join(settings.work, "english.txt")
+    results = {"machine": runner.machine(),
+               "settings": {key: getattr(settings, key) for key in
+                            ("repeats", "memory_repeats", "base_size", "memory_size")},
+               "sections": {}}
+    print(json.dumps(results["machine"]))
     for name in settings.sections or SECTIONS:
-        records[name] = SECTIONS[name](settings)
-    kept = {key: getattr(settings, key) for key in
-            ("repeats", "memory_repeats", "base_size", "memory_size")}
-    path = runner.write_results(settings.results, settings.here, records, kept)
+        results["sections"][name] = SECTIONS[name](settings)
+    path = runner.write_results(settings.results, settings.here, results,
+                                {"WORK": settings.work, "BENCHMARKS": settings.here})
     print(f"\nraw results: {path}")
 
 

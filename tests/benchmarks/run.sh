@@ -3,9 +3,9 @@
 #
 #   tests/benchmarks/run.sh [SECTION...]      sections: whole threads sizes memory languages
 #
-# It builds a release, fetches real text that Debian packages carry, makes the rest, and writes every
-# single time to tests/benchmarks/results/. With nothing else running on the machine it takes some 15
-# minutes on two cores and 5 GB of disk. Settings, as environment variables:
+# It builds a release, fetches real text that Debian packages carry, makes the rest, and writes
+# every single time to tests/benchmarks/results/. With nothing else running on the machine it takes
+# some 15 minutes on two cores and 5 GB of disk. Settings, as environment variables:
 #
 #   BENCH_WORK           where builds, corpora and runs go     (tests/benchmarks/work)
 #   BENCH_REPEATS        alternating runs of each command      (5)
@@ -33,7 +33,7 @@ if command -v npm >/dev/null; then
   mkdir -p "$work/duckdb"
   if [ ! -d "$work/duckdb/node_modules/@duckdb/node-api" ]; then
     (cd "$work/duckdb" && npm init -y >/dev/null &&
-      npm install --no-audit --no-fund --silent @duckdb/node-api@1) || true
+      npm install --no-audit --no-fund --silent @duckdb/node-api) || true
   fi
   [ -d "$work/duckdb/node_modules/@duckdb/node-api" ] && duckdb=$work/duckdb
 fi

@@ -98,14 +98,19 @@ def commit(source):
     return head.stdout.strip() + ("+" if changes.stdout.strip() else "")
 
 
-def write_results(folder, source, sections, settings):
-    """All single times as JSON; returns the path."""
+def write_results(folder, source, results, places):
+    """Writes all single times as JSON and returns the path.
+
+    places: the folders of this machine, by the name that stands for each in what is written.
+    """
     os.makedirs(folder, exist_ok=True)
     now = datetime.datetime.now(datetime.timezone.utc)
     name = f"{now:%Y-%m-%d-%H%M}-{commit(source).rstrip('+')}.json"
     path = os.path.join(folder, name)
+    head = {"date": now.isoformat(timespec="seconds"), "commit": commit(source)}
+    text = json.dumps({**head, **results}, indent=1)
+    for name, place in places.items():
+        text = text.replace(place, name)
     with open(path, "w", encoding="utf-8") as file:
-        json.dump({"date": now.isoformat(timespec="seconds"), "commit": commit(source),
-                   "machine": machine(), "settings": settings, "sections": sections}, file, indent=1)
-        file.write("\n")
+        file.write(text + "\n")
     return path

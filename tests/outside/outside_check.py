@@ -3,18 +3,18 @@
 
 Usage: outside_check.py PHRASEWELD FOLDER
 
-PHRASEWELD is the program; FOLDER is what configs/fetch-real-text.sh laid out: two dictionaries (GCIDE,
-FOLDOC), git's manuals, and lists of multi-word terms: WordNet's nouns, the compounds of Webster's
-Second International (web2a), the dictionaries' own headwords, git's glossary.
+PHRASEWELD is the program; FOLDER is what configs/fetch-real-text.sh laid out: two dictionaries
+(GCIDE, FOLDOC), git's manuals, and lists of multi-word terms: WordNet's nouns, the compounds of
+Webster's Second International (web2a), the dictionaries' own headwords, git's glossary.
 
-For each corpus two things are printed. Recall: of the list entries that occur in the text as often and
-in as many documents as the gates ask, counted here by a plain word rule, how many are in the
-inventory. Precision at k: how many of the best k pairs are list entries, for the pairs of pass 1 in the
-job's own order, against adjacent pairs by frequency, once all of them and once without those that
-begin or end in a function word.
+For each corpus two things are printed. Recall: of the list entries that occur in the text as often
+and in as many documents as the gates ask, counted here by a plain word rule, how many are in the
+inventory. Precision at k: how many of the best k pairs are list entries, for the pairs of pass 1 in
+the job's own order, against adjacent pairs by frequency, once all of them and once without those
+that begin or end in a function word.
 
-The check fails where a figure falls under its floor in FLOORS, which lies below what was measured, or
-where the job's order is no better than adjacent pairs by frequency.
+The check fails where a figure falls under its floor in FLOORS, which lies below what was measured,
+or where the job's order is no better than adjacent pairs by frequency.
 """
 
 import collections
@@ -47,9 +47,10 @@ phrases: {{longest: {longest}}}
 deliver: {{corpus: none, report: false}}
 """
 
-# The least recall of each list and the least precision at each k; the figures measured when this was
-# written stand behind them. Between the dictionaries' texts and the lists there is much to find; in
-# git's manuals few terms are in any list, and there frequency without function words does as well.
+# The least recall of each list and the least precision at each k; the figures measured when this
+# was written stand behind them. Between the dictionaries' texts and the lists there is much to
+# find; in git's manuals few terms are in any list, and there frequency without function words does
+# as well.
 FLOORS = {
     "gcide": {
         "recall": {"WordNet": 0.92, "web2a": 0.93, "headwords": 0.93},  # 0.957, 0.964, 0.963
@@ -68,7 +69,8 @@ FLOORS = {
     },
 }
 
-# Letters, digits and underscores, with single marks between two of them: close to UAX #29 in English.
+# Letters, digits and underscores, with single marks between two of them: close to UAX #29 in
+# English.
 WORD = re.compile(r"\w+(?:['\u2019.:\u00b7]\w+|(?<=\d)[,;]\d\w*)*")
 OPEN_GAP = re.compile(r"[ \u00a0]*(?:\r?\n[ \u00a0]*)?|[-\u2010\u2011]")
 
@@ -97,15 +99,16 @@ def open_corpora(folder):
     for name in ("gcide", "foldoc"):
         path = os.path.join(folder, "dictionaries", name + ".jsonl")
         entries = (json.loads(line) for line in read_lines_of_json(path))
-        yield Corpus(name, f'{{files: ["{path}"], layout: json_lines, fields: [title, body], id: id}}',
+        yield Corpus(name,
+                     f'{{files: ["{path}"], layout: json_lines, fields: [title, body], id: id}}',
                      ([entry["title"], entry["body"]] for entry in entries),
                      paths(headwords=f"dictionaries/{name}-headwords.txt"))
-    files = sorted(glob.glob(os.path.join(folder, "git/text/*.txt")))
+    pattern = os.path.join(folder, "git/text/*.txt")
     texts = []
-    for path in files:
+    for path in glob.glob(pattern):
         with open(path, encoding="utf-8", newline="") as file:
             texts.append([file.read()])
-    yield Corpus("git", f'{{files: ["{os.path.join(folder, "git/text/*.txt")}"], layout: text}}', texts,
+    yield Corpus("git", f'{{files: ["{pattern}"], layout: text}}', texts,
                  paths(glossary="git/glossary.txt"))
 
 

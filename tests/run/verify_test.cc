@@ -3,9 +3,10 @@
 #include <gmock/gmock.h>
 #include <gtest/gtest.h>
 
+#include <atomic>
 #include <filesystem>
 #include <functional>
-#include <map>
+#include <memory>
 #include <string>
 #include <string_view>
 #include <utility>
@@ -36,7 +37,8 @@ constexpr char kJob[] =
     "  - {name: pairs, accept: {occurrences: 3, documents: 2, pmi: 1}}\n"
     "  - {name: longer, repeat: 3, rank_by: npmi, accept: {occurrences: 2, g2: 1}}\n"
     "phrases: {longest: 5, rulings: FOLDER/rulings.yaml}\n"
-    "deliver: {corpus: CORPUS, spans: true, joiner: \"JOINER\", compress: COMPRESS}\n"
+    "deliver: {corpus: CORPUS, spans: true, joiner: \"JOINER\", compress: COMPRESS, report: "
+    "REPORT}\n"
     "run_folder: FOLDER/run\n";
 
 constexpr char kRulings[] =
@@ -81,6 +83,7 @@ class VerifyTest : public ::testing::Test {
  protected:
   struct Shape {
     std::string layout = "json_lines", corpus = "source", joiner = "_", compress = "none";
+    std::string report = "false";
   };
 
   void Run(const Shape& shape) {
@@ -93,7 +96,8 @@ class VerifyTest : public ::testing::Test {
            {"LAYOUT", shape.layout},
            {"CORPUS", shape.corpus},
            {"JOINER", shape.joiner},
-           {"COMPRESS", shape.compress}});
+           {"COMPRESS", shape.compress},
+           {"REPORT", shape.report}});
   }
 
   void RunOn(const std::vector<std::pair<std::string, std::string>>& values) {
@@ -243,7 +247,7 @@ TEST_F(VerifyTest, TheReportTellsWhatWasProved) {
 }
 
 TEST_F(VerifyTest, AnyFlippedByteOfTheRunFolderIsFoundAndItsFileNamed) {
-  Run({});
+  Run({"json_lines", "source", "_", "none", "true"});
   const std::string manifest = folder_.Get("run/manifest.json");
   const size_t version = manifest.find("\"version\":\"") + 11;
   const size_t timings = manifest.find("\"timings\":{") + 11;
@@ -552,6 +556,41 @@ TEST_F(VerifyTest, FaultsAreCutAtTwentyAndCounted) {
   EXPECT_THAT(faults, HasSubstr("\n  and "));
 }
 
+// Has a file for standard input.
+class WithStandardInput : public ForwardingFileSystem {
+ public:
+  explicit WithStandardInput(std::string path)
+      : ForwardingFileSystem(FileSystem::Posix()), path_(std::move(path)) {}
+  absl::StatusOr<std::unique_ptr<ReadFile>> OpenRead(const std::string& path) override {
+    return target_.OpenRead(path == "-" ? path_ : path);
+  }
+
+ private:
+  std::string path_;
+};
+
+TEST_F(VerifyTest, StandardInputIsProvedFromTheRewrittenFile) {
+  WithStandardInput files(folder_.Put("typed", SourceText("lines")));
+  Job job;
+  job.job = "typed";
+  job.run_folder = folder_.Path("run");
+  job.corpus.files = {"-"};
+  job.corpus.layout = Layout::kLines;
+  job.passes[0].accept = {{Quantity::kOccurrences, 3}};
+  ASSERT_TRUE(RunJob(job, RunControls{}, files, Observer{}).ok());
+  std::filesystem::remove(folder_.Path("typed"));
+  EXPECT_THAT(Faults(), IsEmpty());
+  EXPECT_THAT(FaultsAfter("audit/pass-01.jsonl", Bumped(2, "n")), HasSubstr(":2: n: found "));
+  EXPECT_THAT(FaultsAfter("corpus/stdin", Replaced("light", "night")),
+              HasSubstr("corpus/stdin: the restored text is not the source: "));
+  folder_.Put("typed", SourceText("lines"));
+  job.deliver.corpus = CorpusForm::kWords;
+  RunControls fresh;
+  fresh.fresh = true;
+  ASSERT_TRUE(RunJob(job, fresh, files, Observer{}).ok());
+  EXPECT_THAT(Faults(), HasSubstr("standard input: it is gone"));
+}
+
 // Under compatibility case one letter becomes four words with spaces between them.
 TEST_F(VerifyTest, TextsThatCanBeReadInSeveralWaysAreToldApart) {
   const std::string words = "صلى الله عليه وسلم";
@@ -560,7 +599,11 @@ TEST_F(VerifyTest, TextsThatCanBeReadInSeveralWaysAreToldApart) {
     AppendTo(&text, "محمد ﷺ قال\n", words, " قال\nمحمد ", words, " قال خير\n");
   }
   folder_.Put("in/arabic.txt", text);
-  RunOn({{"LAYOUT", "lines"}, {"CORPUS", "words"}, {"JOINER", "_"}, {"COMPRESS", "none"}});
+  RunOn({{"LAYOUT", "lines"},
+         {"CORPUS", "words"},
+         {"JOINER", "_"},
+         {"COMPRESS", "none"},
+         {"REPORT", "false"}});
   EXPECT_THAT(folder_.Get("run/inventory.jsonl"), HasSubstr("ﷺ"));
   EXPECT_THAT(Faults(), IsEmpty());
   EXPECT_THAT(FaultsAfter("audit/pass-01.jsonl", Bumped(2, "n")), HasSubstr("pass-01.jsonl:2: "));
