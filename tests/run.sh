@@ -35,7 +35,8 @@ fi
 
 echo "== release build, warnings are errors"
 build_targets=(all)
-if build_program build/test -DCMAKE_BUILD_TYPE=Release -DPHRASEWELD_WERROR=ON; then
+if build_program build/test -DCMAKE_BUILD_TYPE=Release -DPHRASEWELD_WERROR=ON \
+     -DPHRASEWELD_BENCHMARKS=ON; then
   run_tests build/test
 else
   failed=$((failed + 1))
