@@ -1,17 +1,20 @@
 #include "run/plan.h"
 
 #include <algorithm>
+#include <cmath>
 
 #include "base/status.h"
 
 namespace phraseweld {
 namespace {
 
-// Ratios as measured on English, German and French prose; see DEVELOPERS.md, "Memory".
-constexpr double kBytesPerEntry = 5.4;          // of text, for a word or a mark
-constexpr double kMemoryPerEntry = 21.0;        // stream, counts and their changes, all in memory
-constexpr double kScratchPerEntry = 26.0;       // the same on disk
-constexpr double kCompression = 4.0;            // of .zst and .gz inputs
+// Ratios as measured on English manuals and dictionaries; see DEVELOPERS.md, "Memory".
+constexpr double kBytesPerEntry = 6.0;     // of text, for a word or a mark
+constexpr double kMemoryPerEntry = 9.1;    // stream, counts and their changes, all in memory
+constexpr double kScratchPerEntry = 13.0;  // the same on disk
+constexpr double kWordBytes = 50;          // a different word: its form and its place in the tables
+constexpr double kPhraseBytes = 420;       // a phrase: its records, its text, its place in indexes
+constexpr double kCompression = 4.0;       // of .zst and .gz inputs
 constexpr uint64_t kBase = uint64_t{40} << 20;  // program, ICU's tables, caches of the lanes
 
 bool EndsWith(const std::string& text, const char* end) {
@@ -57,16 +60,25 @@ MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
   plan.block_bytes =
       static_cast<size_t>(std::clamp<uint64_t>(block, uint64_t{64} << 10, uint64_t{1} << 20));
   const uint64_t blocks = 5 * plan.blocks_in_flight * plan.block_bytes;
-  const auto in_memory =
-      static_cast<uint64_t>(static_cast<double>(plan.entries) * kMemoryPerEntry) + kBase + blocks;
+  // Different words by Heaps' law; phrases go down as the gate on occurrences goes up.
+  const double entries = static_cast<double>(plan.entries);
+  const double words = 0.75 * std::pow(entries, 0.8);
+  double occurrences = 1;
+  for (const Gate& gate : job.passes.front().accept) {
+    if (gate.quantity == Quantity::kOccurrences) occurrences = gate.least;
+  }
+  const double phrases = entries / 25 / std::max(occurrences, 1.0);
+  const auto always =
+      kBase + blocks +
+      static_cast<uint64_t>(words * (kWordBytes + 8.0 * (lanes + 2)) + phrases * kPhraseBytes);
+  const auto in_memory = always + static_cast<uint64_t>(entries * kMemoryPerEntry);
   // What an archive holds is only known once it has been read, so its stream goes to disk unless
   // there is ample room.
   plan.on_disk = controls.force_disk || in_memory > (unknown ? limit / 2 : limit);
-  plan.memory_bytes = plan.on_disk ? limit : in_memory;
+  plan.memory_bytes = plan.on_disk ? std::min(always + limit / 16, limit) : in_memory;
   if (plan.on_disk) {
     plan.working_bytes = std::max<uint64_t>(limit / 4, uint64_t{4} << 20);
-    plan.scratch_bytes =
-        static_cast<uint64_t>(static_cast<double>(plan.entries) * kScratchPerEntry);
+    plan.scratch_bytes = static_cast<uint64_t>(entries * kScratchPerEntry);
   }
   if (job.deliver.corpus != CorpusForm::kNone) plan.output_bytes = plan.text_bytes;
   plan.chunk_entries = plan.on_disk ? uint64_t{1} << 16 : uint64_t{1} << 18;
