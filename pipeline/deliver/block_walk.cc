@@ -36,7 +36,6 @@ BlockWalk::BlockWalk(const WalkOptions& options, const Entry* stream, uint64_t s
         std::lower_bound(options_.wanted->begin(), options_.wanted->end(), begin) -
         options_.wanted->begin());
   }
-  if (options_.source) output_->text.reserve(bytes.size() + 64);
 }
 
 bool BlockWalk::DocumentHasWordsBefore() const {
@@ -147,10 +146,7 @@ void BlockWalk::EndToken(const WalkPiece& piece, bool goes_on) {
 void BlockWalk::Join(const WalkPiece& piece, uint64_t gap_begin, uint64_t gap_end) {
   if (!options_.source) return;
   const uint64_t from = piece.to_source(gap_begin), to = piece.to_source(gap_end);
-  output_->text += bytes_.substr(copied_, from - copied_);
-  output_->joints.push_back({output_->text.size(), from, to});
-  output_->text += options_.source_joiner;
-  copied_ = to;
+  output_->joints.push_back({0, from, to});
 }
 
 void BlockWalk::Find(const WalkPiece& piece, const WordSpan& word) {
@@ -158,9 +154,30 @@ void BlockWalk::Find(const WalkPiece& piece, const WordSpan& word) {
       {wanted_++, piece.document, piece.field, piece.text_offset + word.begin});
 }
 
+void BlockWalk::WriteSource() {
+  std::vector<BlockOutput::Joint>& joints = output_->joints;
+  // The passages of a JSON object come in the order of the job's fields, whatever their order there.
+  const auto before = [](const BlockOutput::Joint& a, const BlockOutput::Joint& b) {
+    return a.gap_begin < b.gap_begin;
+  };
+  if (!std::is_sorted(joints.begin(), joints.end(), before)) {
+    std::sort(joints.begin(), joints.end(), before);
+  }
+  std::string& text = output_->text;
+  text.reserve(bytes_.size() + joints.size() * options_.source_joiner.size());
+  uint64_t copied = 0;
+  for (BlockOutput::Joint& joint : joints) {
+    text += bytes_.substr(copied, joint.gap_begin - copied);
+    joint.at = text.size();
+    text += options_.source_joiner;
+    copied = joint.gap_end;
+  }
+  text += bytes_.substr(copied);
+}
+
 absl::Status BlockWalk::Finish() {
   if (at_ != end_) return Changed();
-  if (options_.source) output_->text += bytes_.substr(copied_);
+  if (options_.source) WriteSource();
   return absl::OkStatus();
 }
 

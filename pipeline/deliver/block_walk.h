@@ -90,6 +90,7 @@ class BlockWalk {
   void BeginToken(Entry type, uint64_t at, const WalkPiece& piece, const WordSpan& word);
   void EndToken(const WalkPiece& piece, bool goes_on);
   void AppendGap(std::string_view gap);
+  void WriteSource();
   void Join(const WalkPiece& piece, uint64_t gap_begin, uint64_t gap_end);
   void Find(const WalkPiece& piece, const WordSpan& word);
   absl::Status Expect(Entry mark);
@@ -101,7 +102,6 @@ class BlockWalk {
   uint64_t at_;
   std::string_view bytes_;
   BlockOutput* output_;
-  uint64_t copied_ = 0;  // bytes of the block that are in output_->text
   size_t wanted_ = 0;
   // The phrase token that the walk is inside of.
   bool in_token_ = false, token_is_carried_ = false;

@@ -76,50 +76,73 @@ RunSummary Summarise(const EncodedCorpus& corpus, const PassResults& results,
   return summary;
 }
 
+// What is left of the mining once its results are on disk.
+struct Mined {
+  RunSummary summary;
+  std::vector<InputDigest> digests;
+  std::vector<DeliveredFile> written;
+};
+
+// The job itself: read, pass by pass, rewrite, records. What it held in memory is gone when it
+// returns.
+absl::StatusOr<Mined> Mine(const Job& job, const std::vector<InputFile>& inputs,
+                           const RunControls& controls, const RunFolderWriter& folder,
+                           FileSystem& files, ThreadLanes& lanes, const Observer& observer,
+                           Timings* timings) {
+  PW_ASSIGN_OR_RETURN(std::vector<std::string> function_words, FunctionWordForms(job));
+  PW_ASSIGN_OR_RETURN(std::vector<ResolvedRuling> rulings, ResolveRulings(job));
+  PW_ASSIGN_OR_RETURN(const std::vector<uint64_t> sizes, InputSizes(files, inputs));
+  const MemoryPlan plan = PlanMemory(job, inputs, sizes, lanes.lanes(), controls);
+
+  timings->Begin("read");
+  observer.stage({0, "", "read", plan.text_bytes, "bytes"});
+  EncodedCorpus corpus;
+  PW_RETURN_IF_ERROR(EncodeCorpus(job, inputs, plan, function_words, folder.scratch(), files, lanes,
+                                  observer, &corpus));
+  PassResults results;
+  PW_RETURN_IF_ERROR(RunPasses(job, plan, function_words, std::move(rulings), folder.scratch(),
+                               files, lanes, observer, timings, &corpus, &results));
+  timings->Begin("rewrite");
+  observer.stage({0, "", "rewrite", corpus.text_bytes, "bytes"});
+  Mined mined;
+  Delivery delivery;
+  PW_RETURN_IF_ERROR(DeliverCorpus(job, inputs, plan, folder.folder(), files, lanes, observer,
+                                   corpus, results, &delivery, &mined.written));
+  timings->Begin("records");
+  PW_ASSIGN_OR_RETURN(
+      std::vector<PhraseRecord> phrases,
+      DeliverRecords(folder.folder(), files, lanes, corpus, results, delivery, &mined.written));
+  PW_ASSIGN_OR_RETURN(DeliveredFile job_file,
+                      DeliverText(folder.folder(), "job.yaml", WriteJobYaml(job), files));
+  mined.written.push_back(job_file);
+  mined.summary = Summarise(corpus, results, phrases);
+  mined.digests = corpus.digests;
+  timings->End();
+  return mined;
+}
+
 }  // namespace
 
 absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, FileSystem& files,
                                   const Observer& observer) {
   const auto begun = std::chrono::steady_clock::now();
-  Timings timings;
-  PW_ASSIGN_OR_RETURN(std::vector<std::string> function_words, FunctionWordForms(job));
-  PW_ASSIGN_OR_RETURN(std::vector<ResolvedRuling> rulings, ResolveRulings(job));
+  // What can be wrong with the job is said before a folder is touched.
+  PW_RETURN_IF_ERROR(FunctionWordForms(job).status());
+  PW_RETURN_IF_ERROR(ResolveRulings(job).status());
   PW_ASSIGN_OR_RETURN(const std::vector<InputFile> named, ResolveInputs(job.corpus.files));
   PW_ASSIGN_OR_RETURN(std::unique_ptr<RunFolderWriter> folder,
                       RunFolderWriter::Open(files, job.run_folder, controls.fresh));
   PW_ASSIGN_OR_RETURN(const std::vector<InputFile> inputs,
                       KeepStandardInput(named, folder->scratch(), files));
-  PW_ASSIGN_OR_RETURN(const std::vector<uint64_t> sizes, InputSizes(files, inputs));
   ThreadLanes lanes(job.limits.threads, observer.stop);
-  const MemoryPlan plan = PlanMemory(job, inputs, sizes, lanes.lanes(), controls);
-
-  timings.Begin("read");
-  observer.stage({0, "", "read", plan.text_bytes, "bytes"});
-  EncodedCorpus corpus;
-  PW_RETURN_IF_ERROR(EncodeCorpus(job, inputs, plan, function_words, folder->scratch(), files,
-                                  lanes, observer, &corpus));
-  PassResults results;
-  PW_RETURN_IF_ERROR(RunPasses(job, plan, function_words, std::move(rulings), folder->scratch(),
-                               files, lanes, observer, &timings, &corpus, &results));
-  timings.Begin("rewrite");
-  observer.stage({0, "", "rewrite", corpus.text_bytes, "bytes"});
-  Delivery delivery;
-  std::vector<DeliveredFile> written;
-  PW_RETURN_IF_ERROR(DeliverCorpus(job, inputs, plan, folder->folder(), files, lanes, observer,
-                                   corpus, results, &delivery, &written));
-  timings.Begin("records");
+  Timings timings;
   PW_ASSIGN_OR_RETURN(
-      std::vector<PhraseRecord> phrases,
-      DeliverRecords(folder->folder(), files, lanes, corpus, results, delivery, &written));
-  PW_ASSIGN_OR_RETURN(DeliveredFile job_file,
-                      DeliverText(folder->folder(), "job.yaml", WriteJobYaml(job), files));
-  written.push_back(job_file);
-  RunSummary summary = Summarise(corpus, results, phrases);
+      Mined mined, Mine(job, inputs, controls, *folder, files, lanes, observer, &timings));
   const auto deliver_manifest = [&] {
     timings.End();
     return DeliverText(folder->folder(), "manifest.json",
-                       ManifestJson(job, named, corpus.digests, written, summary.totals,
-                                    timings.seconds()),
+                       ManifestJson(job, named, mined.digests, mined.written,
+                                    mined.summary.totals, timings.seconds()),
                        files)
         .status();
   };
@@ -132,13 +155,14 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
     PW_ASSIGN_OR_RETURN(WrittenReport report,
                         WriteReport(files, folder->folder(), inputs, folder->folder() + "/" + page,
                                     lanes, observer));
-    written.push_back({page, report.digest});
+    mined.written.push_back({page, report.digest});
     PW_RETURN_IF_ERROR(deliver_manifest());
   }
   PW_RETURN_IF_ERROR(folder->Commit());
-  summary.run_folder = job.run_folder;
-  summary.seconds = std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();
-  return summary;
+  mined.summary.run_folder = job.run_folder;
+  mined.summary.seconds =
+      std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();
+  return mined.summary;
 }
 
 }  // namespace phraseweld

@@ -135,7 +135,10 @@ std::string RandomJobs::JsonDocument(const Job& job, int number) {
     if (out.size() > 1) out += ", ";
   };
   const bool was_hostile = hostile_;
-  for (const std::string& field : job.corpus.fields) {
+  // The fields stand in any order, and not in that of the job alone.
+  std::vector<std::string> fields = job.corpus.fields;
+  if (Chance(40)) std::reverse(fields.begin(), fields.end());
+  for (const std::string& field : fields) {
     if (Chance(15)) continue;
     comma();
     absl::StrAppend(&out, "\"", field, "\" :");
