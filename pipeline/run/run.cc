@@ -136,13 +136,13 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
                       KeepStandardInput(named, folder->scratch(), files));
   ThreadLanes lanes(job.limits.threads, observer.stop);
   Timings timings;
-  PW_ASSIGN_OR_RETURN(
-      Mined mined, Mine(job, inputs, controls, *folder, files, lanes, observer, &timings));
+  PW_ASSIGN_OR_RETURN(Mined mined,
+                      Mine(job, inputs, controls, *folder, files, lanes, observer, &timings));
   const auto deliver_manifest = [&] {
     timings.End();
     return DeliverText(folder->folder(), "manifest.json",
-                       ManifestJson(job, named, mined.digests, mined.written,
-                                    mined.summary.totals, timings.seconds()),
+                       ManifestJson(job, named, mined.digests, mined.written, mined.summary.totals,
+                                    timings.seconds()),
                        files)
         .status();
   };

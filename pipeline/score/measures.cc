@@ -24,26 +24,31 @@ namespace {
 
 constexpr double kBillion = 1e9;
 
+// Scores are printed to nine decimals, and two programs must print the same ones. A double's own
+// rounding errors would decide some of the last digits, so that sums and logarithms are taken in
+// the widest type there is and become a double once, at the end.
+using Wide = long double;
+
 // n*N - L*R. The two products can agree in more digits than a double has, so that their difference
 // is taken in whole numbers; this is what keeps every measure right near independence.
-double ExcessProduct(const SlotTable& table) {
+Wide ExcessProduct(const SlotTable& table) {
   const absl::uint128 observed = absl::uint128(table.n) * table.total;
   const absl::uint128 expected = absl::uint128(table.left) * table.right;
-  return observed >= expected ? static_cast<double>(observed - expected)
-                              : -static_cast<double>(expected - observed);
+  return observed >= expected ? static_cast<Wide>(observed - expected)
+                              : -static_cast<Wide>(expected - observed);
 }
 
 // n - E.
-double Excess(const SlotTable& table) {
-  return ExcessProduct(table) / static_cast<double>(table.total);
+Wide Excess(const SlotTable& table) {
+  return ExcessProduct(table) / static_cast<Wide>(table.total);
 }
 
 // Church & Hanks 1990; Fano 1961: log2(n/E) = log2(n*N / (L*R)).
-double Pmi(const SlotTable& table) {
-  const double margins = static_cast<double>(table.left) * static_cast<double>(table.right);
-  const double ratio = static_cast<double>(table.n) * static_cast<double>(table.total) / margins;
+Wide Pmi(const SlotTable& table) {
+  const Wide margins = static_cast<Wide>(table.left) * static_cast<Wide>(table.right);
+  const Wide ratio = static_cast<Wide>(table.n) * static_cast<Wide>(table.total) / margins;
   if (ratio > 0.5 && ratio < 2) {
-    return std::log1p(ExcessProduct(table) / margins) * std::numbers::log2e;
+    return std::log1p(ExcessProduct(table) / margins) * std::numbers::log2e_v<Wide>;
   }
   return std::log2(ratio);
 }
@@ -51,17 +56,17 @@ double Pmi(const SlotTable& table) {
 // Bouma 2009: pmi / -log2(n/N), whose limit where both vanish is set to 1.
 double Npmi(const SlotTable& table) {
   if (table.n >= table.total) return 1;
-  const double n = static_cast<double>(table.n);
-  const double rest = static_cast<double>(table.total - table.n);
-  const double information = rest < n ? std::log1p(rest / n) * std::numbers::log2e
-                                      : std::log2(static_cast<double>(table.total) / n);
+  const Wide n = static_cast<Wide>(table.n);
+  const Wide rest = static_cast<Wide>(table.total - table.n);
+  const Wide information = rest < n ? std::log1p(rest / n) * std::numbers::log2e_v<Wide>
+                                    : std::log2(static_cast<Wide>(table.total) / n);
   return Pmi(table) / information;
 }
 
 // Daille 1994: pmi + (k-1) * log2(n/M).
 double PmiToThePower(const SlotTable& table, int k) {
   return Pmi(table) +
-         (k - 1) * std::log2(static_cast<double>(table.n) / static_cast<double>(table.all));
+         (k - 1) * std::log2(static_cast<Wide>(table.n) / static_cast<Wide>(table.all));
 }
 
 double PmiFloor(const SlotTable& table) {
@@ -71,17 +76,17 @@ double PmiFloor(const SlotTable& table) {
 // O*ln(O/E) - (O - E), which is never negative. Near O = E the two parts cancel, and the series of
 // Loader 2000 ("Fast and accurate computation of binomial probabilities", the function bd0) has
 // every digit. `difference` is O - E, which the caller knows more exactly than O and E tell.
-double CellDeviance(double observed, double expected, double difference) {
+Wide CellDeviance(Wide observed, Wide expected, Wide difference) {
   if (observed <= 0 || expected <= 0) return -difference;
   if (std::abs(difference) >= 0.1 * (observed + expected)) {
     return observed * std::log(observed / expected) - difference;
   }
-  const double ratio = difference / (observed + expected);
-  double sum = difference * ratio;
-  double power = 2 * observed * ratio;
+  const Wide ratio = difference / (observed + expected);
+  Wide sum = difference * ratio;
+  Wide power = 2 * observed * ratio;
   for (int odd = 3;; odd += 2) {
     power *= ratio * ratio;
-    const double next = sum + power / odd;
+    const Wide next = sum + power / odd;
     if (next == sum) return sum;
     sum = next;
   }
@@ -89,24 +94,23 @@ double CellDeviance(double observed, double expected, double difference) {
 
 // The four cells of a table and their expected numbers.
 struct Cells {
-  std::array<double, 4> observed;
-  std::array<double, 4> expected;
+  std::array<Wide, 4> observed;
+  std::array<Wide, 4> expected;
 };
 
 Cells CellsOf(const SlotTable& table) {
-  const double n = static_cast<double>(table.n);
-  const double left = static_cast<double>(table.left);
-  const double right = static_cast<double>(table.right);
-  const double total = static_cast<double>(table.total);
+  const Wide n = static_cast<Wide>(table.n);
+  const Wide left = static_cast<Wide>(table.left);
+  const Wide right = static_cast<Wide>(table.right);
+  const Wide total = static_cast<Wide>(table.total);
   const uint64_t outside_left = table.total - table.left;
   const uint64_t right_alone = table.right - table.n;
-  const double not_left = static_cast<double>(outside_left);
-  const double not_right = static_cast<double>(table.total - table.right);
-  const double left_only = static_cast<double>(table.left - table.n);
-  const double right_only = static_cast<double>(right_alone);
-  const double neither = outside_left >= right_alone
-                             ? static_cast<double>(outside_left - right_alone)
-                             : -static_cast<double>(right_alone - outside_left);
+  const Wide not_left = static_cast<Wide>(outside_left);
+  const Wide not_right = static_cast<Wide>(table.total - table.right);
+  const Wide left_only = static_cast<Wide>(table.left - table.n);
+  const Wide right_only = static_cast<Wide>(right_alone);
+  const Wide neither = outside_left >= right_alone ? static_cast<Wide>(outside_left - right_alone)
+                                                   : -static_cast<Wide>(right_alone - outside_left);
   return {{n, left_only, right_only, neither},
           {left * right / total, left * not_right / total, not_left * right / total,
            not_left * not_right / total}};
@@ -116,9 +120,9 @@ Cells CellsOf(const SlotTable& table) {
 // cells are n - E or its negative and add up to 0, so that they may be taken off cell by cell.
 double LogLikelihoodRatio(const SlotTable& table) {
   const Cells cells = CellsOf(table);
-  const double excess = Excess(table);
-  const std::array<double, 4> differences = {excess, -excess, -excess, excess};
-  double sum = 0;
+  const Wide excess = Excess(table);
+  const std::array<Wide, 4> differences = {excess, -excess, -excess, excess};
+  Wide sum = 0;
   for (size_t i = 0; i < 4; ++i) {
     sum += CellDeviance(cells.observed[i], cells.expected[i], differences[i]);
   }
@@ -127,9 +131,9 @@ double LogLikelihoodRatio(const SlotTable& table) {
 
 // Pearson: sum of (O-E)^2 / E, no correction for continuity.
 double ChiSquared(const SlotTable& table) {
-  const double excess = Excess(table);
-  double sum = 0;
-  for (const double expected : CellsOf(table).expected) {
+  const Wide excess = Excess(table);
+  Wide sum = 0;
+  for (const Wide expected : CellsOf(table).expected) {
     if (expected > 0) sum += excess * (excess / expected);
   }
   return sum;
@@ -137,20 +141,20 @@ double ChiSquared(const SlotTable& table) {
 
 // Church et al. 1991; Manning & Schuetze 1999, section 5.3.1: (n - E) / sqrt(n).
 double StudentT(const SlotTable& table) {
-  return Excess(table) / std::sqrt(static_cast<double>(table.n));
+  return Excess(table) / std::sqrt(static_cast<Wide>(table.n));
 }
 
 // Dice 1945: 2n / (L + R).
 double Dice(const SlotTable& table) {
-  return 2 * static_cast<double>(table.n) /
-         (static_cast<double>(table.left) + static_cast<double>(table.right));
+  return 2 * static_cast<Wide>(table.n) /
+         (static_cast<Wide>(table.left) + static_cast<Wide>(table.right));
 }
 
 // Allan 1980: P(outcome | cue) - P(outcome | no cue) = n/cue - (outcome-n) / (N-cue).
 double DeltaP(uint64_t n, uint64_t cue, uint64_t outcome, uint64_t total) {
-  const double with = static_cast<double>(n) / static_cast<double>(cue);
+  const Wide with = static_cast<Wide>(n) / static_cast<Wide>(cue);
   if (total == cue) return with;
-  return with - static_cast<double>(outcome - n) / static_cast<double>(total - cue);
+  return with - static_cast<Wide>(outcome - n) / static_cast<Wide>(total - cue);
 }
 
 // Church & Gale 1995: mean occurrences in a document that has the type.
@@ -166,7 +170,7 @@ double Unrounded(Quantity quantity, const SlotTable& table) {
     case Quantity::kDocuments:
       return static_cast<double>(table.documents);
     case Quantity::kPmi:
-      return Pmi(table);
+      return static_cast<double>(Pmi(table));
     case Quantity::kNpmi:
       return Npmi(table);
     case Quantity::kPmi2:

@@ -47,8 +47,7 @@ class Agreement : public ::testing::Test {
       job.corpus.files.push_back((folder_ / "in" / input.name).string());
     }
     job.run_folder = (folder_ / "run").string();
-    absl::StatusOr<RunSummary> summary =
-        RunJob(job, controls, FileSystem::Posix(), Observer{});
+    absl::StatusOr<RunSummary> summary = RunJob(job, controls, FileSystem::Posix(), Observer{});
     if (!summary.ok()) return summary.status();
     std::map<std::string, std::string> files;
     for (const auto& entry : fs::recursive_directory_iterator(folder_ / "run")) {
@@ -105,9 +104,8 @@ void ExpectSameFiles(const std::map<std::string, std::string>& expected,
 std::string Describe(const Job& job, const std::vector<RefInput>& inputs,
                      const RunControls& controls) {
   std::string out = absl::StrCat("threads ", job.limits.threads, ", block ", controls.block_bytes,
-                                 ", chunk ", controls.chunk_entries, ", disk ",
-                                 controls.force_disk, ", layout ",
-                                 static_cast<int>(job.corpus.layout));
+                                 ", chunk ", controls.chunk_entries, ", disk ", controls.force_disk,
+                                 ", layout ", static_cast<int>(job.corpus.layout));
   for (const RefInput& input : inputs) absl::StrAppend(&out, "\n", input.name, ": ", input.bytes);
   return out;
 }
@@ -132,8 +130,7 @@ TEST_F(Agreement, RandomCorporaGiveTheReferenceRunFolder) {
     controls.block_bytes = 1 + random.Below(200);
     controls.chunk_entries = 1 + random.Below(60);
     controls.force_disk = random.Below(3) == 0;
-    const std::string what =
-        absl::StrCat("seed ", seed, ": ", Describe(job, inputs, controls));
+    const std::string what = absl::StrCat("seed ", seed, ": ", Describe(job, inputs, controls));
     std::map<std::string, std::string> expected;
     bool stops = false;
     try {

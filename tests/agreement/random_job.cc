@@ -10,9 +10,9 @@ namespace {
 // Words that differ in what matters: plain, function words, numbers, letters that fold, words that
 // end up as one form, dictionary scripts, a word whose form is empty or holds spaces.
 const std::vector<std::string> kWords = {
-    "a",  "b",  "c",    "d",      "of",    "the",      "A",          "B",      "1",
-    "22", "x9", "é",    "E\u0301", "don't", "don\u2019t", "straße",   "STRASSE", "漢字",
-    "ไทย", "ﷺ",  "\u115F", "ｆ",      "a_b",   "3.14",     "और",         "q",      "of"};
+    "a",   "b",  "c",      "d",       "of",    "the",        "A",      "B",       "1",
+    "22",  "x9", "é",      "E\u0301", "don't", "don\u2019t", "straße", "STRASSE", "漢字",
+    "ไทย", "ﷺ",  "\u115F", "ｆ",      "a_b",   "3.14",       "और",     "q",       "of"};
 
 }  // namespace
 
@@ -87,11 +87,11 @@ Job RandomJobs::NextJob() {
 }
 
 std::string RandomJobs::Text(int words, bool line_breaks) {
-  static const std::vector<std::string> kGaps = {"  ", "-", "\u2010", ", ", ".", "\t", "\u00A0",
-                                                 "",   " \u00A0", "--", "; ", "\u3000", " - "};
+  static const std::vector<std::string> kGaps = {
+      "  ", "-", "\u2010", ", ", ".", "\t", "\u00A0", "", " \u00A0", "--", "; ", "\u3000", " - "};
   static const std::vector<std::string> kBreaks = {"\n", "\r\n", "\n\n", " \n ", "\u2028"};
-  static const std::vector<std::string> kHostile = {std::string(1, '\0'), "\xFF", "\xC3", "_",
-                                                    "\xEF\xBB\xBF", "\x7F", "\xF0\x9F\x98\x80"};
+  static const std::vector<std::string> kHostile = {
+      std::string(1, '\0'), "\xFF", "\xC3", "_", "\xEF\xBB\xBF", "\x7F", "\xF0\x9F\x98\x80"};
   std::string text;
   for (int i = 0; i < words; ++i) {
     text += kWords[Below(static_cast<uint64_t>(alphabet_))];

@@ -45,36 +45,21 @@ std::string Escape(std::string_view text) {
   return escaped;
 }
 
-std::string NineDecimals(double value) {
-  // A double next to a half of the ninth decimal is either exactly there or at least 1e-35 away
-  // (it is a multiple of 2^-84 where it is above 5e-10), so 60 decimals tell on which side it is.
-  char exact[400];
-  std::snprintf(exact, sizeof(exact), "%.60f", std::fabs(value));
-  std::string digits = exact;
-  const size_t point = digits.find('.');
-  const bool up = digits[point + 10] >= '5';
-  digits.resize(point + 10);
-  if (up) {
-    size_t i = digits.size();
-    while (i > 0) {
-      --i;
-      if (digits[i] == '.') continue;
-      if (digits[i] != '9') {
-        ++digits[i];
-        break;
-      }
-      digits[i] = '0';
-      if (i == 0) digits.insert(digits.begin(), '1');
-    }
-  }
-  while (digits.back() == '0') digits.pop_back();
-  if (digits.back() == '.') digits.pop_back();
-  if (value < 0 && digits != "0") digits.insert(digits.begin(), '-');
-  return digits;
+// Decision 4: times a thousand million, rounded to a whole number with halves away from zero, and
+// back. A value too large to have nine decimals stays.
+double RoundToNineDecimals(double value) {
+  const double scaled = value * 1e9;
+  if (std::fabs(scaled) < 9007199254740992.0) value = std::round(scaled) / 1e9;
+  return value == 0 ? 0 : value;
 }
 
-double RoundToNineDecimals(double value) {
-  return std::strtod(NineDecimals(value).c_str(), nullptr);
+std::string NineDecimals(double value) {
+  char fixed[400];
+  std::snprintf(fixed, sizeof(fixed), "%.9f", RoundToNineDecimals(value));
+  std::string digits = fixed;
+  while (digits.back() == '0') digits.pop_back();
+  if (digits.back() == '.') digits.pop_back();
+  return digits;
 }
 
 JsonObject& JsonObject::Text(std::string_view key, std::string_view value) {

@@ -21,7 +21,9 @@ double PoissonTail(double n, double mean) {
 
 // O·ln(O/E). 0·ln 0 = 0; a cell in which O or E is not above 0, as can happen with the margins of
 // words, has no logarithm and adds nothing.
-long double G2Cell(long double o, long double e) { return o > 0 && e > 0 ? o * std::log(o / e) : 0; }
+long double G2Cell(long double o, long double e) {
+  return o > 0 && e > 0 ? o * std::log(o / e) : 0;
+}
 
 // (O−E)²/E. A cell in which nothing is expected adds nothing.
 long double Chi2Cell(long double o, long double e) { return e > 0 ? (o - e) * (o - e) / e : 0; }
@@ -92,7 +94,8 @@ std::map<Quantity, double> Measure(const Counts& counts) {
   scores[Quantity::kDpForward] = QuotientOrZero(n, L) - QuotientOrZero(O21, N - L);
   scores[Quantity::kDpBackward] = QuotientOrZero(n, R) - QuotientOrZero(O12, N - R);
   scores[Quantity::kBurst] = n / documents;
-  // Scores come from a wider type than the program's, so that its last bits decide no rounding here.
+  // Scores come from a wider type than the program's, so that its last bits decide no rounding
+  // here.
   std::map<Quantity, double> values;
   for (const auto& [quantity, value] : scores) {
     values[quantity] = RoundToNineDecimals(static_cast<double>(value));
