@@ -43,23 +43,23 @@ else
 fi
 
 echo "== address and undefined behaviour sanitizers"
-build_targets=(base_test files_test read_test words_test score_test agreement_test run_test)
+build_targets=(base_test files_test read_test words_test score_test)
 if build_program build/asan -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCMAKE_CXX_FLAGS_RELWITHDEBINFO=-O1 \
      -DPHRASEWELD_SANITIZE=address,undefined; then
   # Sweeps over every string of a kind are for the fast build.
-  GTEST_FILTER='-PathsAgree.OnEvery*' PHRASEWELD_AGREEMENT_ROUNDS=300 \
-    run_tests build/asan -R '^(base|files|read|words|score|agreement|run)$'
+  GTEST_FILTER='-PathsAgree.OnEvery*' run_tests build/asan -R '^(base|files|read|words|score)$'
 else
   failed=$((failed + 1))
 fi
 
 echo "== thread sanitizer"
-build_targets=(words_test agreement_test)
+# The vocabulary is what threads write to together; its tests start threads of their own. oneTBB is
+# not built with the sanitizer, which takes its hand-overs for races, so that what runs on oneTBB is
+# held to the same bytes under 1, 2, 3 and 8 threads instead.
+build_targets=(words_test)
 if build_program build/tsan -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCMAKE_CXX_FLAGS_RELWITHDEBINFO=-O1 \
      -DPHRASEWELD_SANITIZE=thread; then
-  # oneTBB comes without the annotations that would show the sanitizer its hand-overs.
-  TSAN_OPTIONS="suppressions=$top/tests/tsan-suppressions.txt" PHRASEWELD_AGREEMENT_ROUNDS=150 \
-    GTEST_FILTER='*Encoder*:*Vocabulary*:Agreement*' run_tests build/tsan -R '^(words|agreement)$'
+  GTEST_FILTER='*Encoder*:*Vocabulary*' run_tests build/tsan -R '^words$'
 else
   failed=$((failed + 1))
 fi
