@@ -8,7 +8,7 @@ cd "$top"
 install_missing "${program_packages[@]}"
 echo "Building (a few minutes the first time) ..."
 build_targets=(phraseweld)
-build_program build/release -DCMAKE_BUILD_TYPE=Release -DPHRASEWELD_TESTS=OFF
+build_program build/release -DCMAKE_BUILD_TYPE=Release -DPHRASEWELD_TESTS=OFF -DPHRASEWELD_UNITY=ON
 
 phraseweld=build/release/phraseweld
 echo

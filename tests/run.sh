@@ -1,7 +1,7 @@
 #!/usr/bin/env bash
 # All tests: installs what is missing, builds, and runs
 #   1. every test of the release build,
-#   2. the tests of the step code under AddressSanitizer and UndefinedBehaviorSanitizer,
+#   2. the tests of the step code and of whole runs under AddressSanitizer and UndefinedBehaviorSanitizer,
 #   3. the tests that use threads under ThreadSanitizer.
 # The last line says how many passed and failed.
 set -uo pipefail
@@ -43,11 +43,12 @@ else
 fi
 
 echo "== address and undefined behaviour sanitizers"
-build_targets=(base_test files_test read_test words_test score_test)
+build_targets=(base_test files_test read_test words_test score_test run_test agreement_test)
 if build_program build/asan -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCMAKE_CXX_FLAGS_RELWITHDEBINFO=-O1 \
-     -DPHRASEWELD_SANITIZE=address,undefined; then
+     -DPHRASEWELD_SANITIZE=address,undefined -DPHRASEWELD_UNITY=ON; then
   # Sweeps over every string of a kind are for the fast build.
-  GTEST_FILTER='-PathsAgree.OnEvery*' run_tests build/asan -R '^(base|files|read|words|score)$'
+  GTEST_FILTER='-PathsAgree.OnEvery*' PHRASEWELD_AGREEMENT_ROUNDS=300 PHRASEWELD_AGREEMENT_SEED=5001 \
+    run_tests build/asan -R '^(base|files|read|words|score|run|agreement)$'
 else
   failed=$((failed + 1))
 fi
@@ -58,7 +59,7 @@ echo "== thread sanitizer"
 # held to the same bytes under 1, 2, 3 and 8 threads instead.
 build_targets=(words_test)
 if build_program build/tsan -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCMAKE_CXX_FLAGS_RELWITHDEBINFO=-O1 \
-     -DPHRASEWELD_SANITIZE=thread; then
+     -DPHRASEWELD_SANITIZE=thread -DPHRASEWELD_UNITY=ON; then
   GTEST_FILTER='*IdsDepend*:Vocabulary*' run_tests build/tsan -R '^words$'
 else
   failed=$((failed + 1))

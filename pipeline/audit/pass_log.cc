@@ -7,27 +7,17 @@
 namespace phraseweld {
 namespace {
 
-void AppendCount(std::string* out, const char* key, uint64_t value) {
-  AppendJsonKey(out, key);
-  absl::StrAppend(out, value);
-}
-
-void AppendText(std::string* out, const char* key, std::string_view text) {
-  AppendJsonKey(out, key);
-  AppendJsonString(out, text);
-}
-
 std::string PassLine(const PassRecord& pass, const ScoreWriter& scores) {
   std::string out = "{";
-  AppendText(&out, "kind", "pass");
-  AppendCount(&out, "pass", static_cast<uint64_t>(pass.number));
-  AppendText(&out, "name", pass.options.name);
-  AppendCount(&out, "tokens_in", pass.tokens_in);
-  AppendCount(&out, "types_in", pass.types_in);
+  AppendJsonString(&out, "kind", "pass");
+  AppendJsonCount(&out, "pass", static_cast<uint64_t>(pass.number));
+  AppendJsonString(&out, "name", pass.options.name);
+  AppendJsonCount(&out, "tokens_in", pass.tokens_in);
+  AppendJsonCount(&out, "types_in", pass.types_in);
   if (pass.number > 0) {
-    AppendCount(&out, "slots", pass.slots);
-    AppendCount(&out, "slot_types", pass.slot_types);
-    AppendText(&out, "rank_by", QuantityName(pass.options.rank_by));
+    AppendJsonCount(&out, "slots", pass.slots);
+    AppendJsonCount(&out, "slot_types", pass.slot_types);
+    AppendJsonString(&out, "rank_by", QuantityName(pass.options.rank_by));
     AppendJsonKey(&out, "accept");
     out += '{';
     for (const Gate& gate : pass.options.accept) {
@@ -47,19 +37,19 @@ void AppendSlotLine(const SlotRecord& record, uint64_t rank, const std::vector<Q
   const TypeTable& types = *context.types;
   const SlotTable& table = record.table;
   *out += '{';
-  AppendText(out, "kind", record.failed ? "near_miss" : "accepted");
-  AppendCount(out, "rank", rank);
-  AppendText(out, "phrase", types.Text(types.SlotWords(record.slot, *context.codes)));
-  AppendText(out, "left", types.Text(record.slot.left));
-  AppendText(out, "bridge", types.Text(context.codes->Words(record.slot.bridge)));
-  AppendText(out, "right", types.Text(record.slot.right));
-  AppendCount(out, "n", table.n);
-  AppendCount(out, "left_slots", table.left);
-  AppendCount(out, "right_slots", table.right);
-  AppendCount(out, "slots", table.total);
+  AppendJsonString(out, "kind", record.failed ? "near_miss" : "accepted");
+  AppendJsonCount(out, "rank", rank);
+  AppendJsonString(out, "phrase", types.Text(types.SlotWords(record.slot, *context.codes)));
+  AppendJsonString(out, "left", types.Text(record.slot.left));
+  AppendJsonString(out, "bridge", types.Text(context.codes->Words(record.slot.bridge)));
+  AppendJsonString(out, "right", types.Text(record.slot.right));
+  AppendJsonCount(out, "n", table.n);
+  AppendJsonCount(out, "left_slots", table.left);
+  AppendJsonCount(out, "right_slots", table.right);
+  AppendJsonCount(out, "slots", table.total);
   AppendJsonKey(out, "expected");
   *out += context.scores.format(context.scores.expected(table));
-  AppendCount(out, "documents", table.documents);
+  AppendJsonCount(out, "documents", table.documents);
   AppendJsonKey(out, "scores");
   *out += '{';
   for (Quantity quantity : shown) {
@@ -67,28 +57,28 @@ void AppendSlotLine(const SlotRecord& record, uint64_t rank, const std::vector<Q
     *out += context.scores.format(context.scores.score(quantity, table));
   }
   *out += '}';
-  AppendCount(out, "joined", record.joined);
-  AppendCount(out, "yielded", record.failed ? 0 : table.n - record.joined);
+  AppendJsonCount(out, "joined", record.joined);
+  AppendJsonCount(out, "yielded", record.failed ? 0 : table.n - record.joined);
   const Place& place = context.place_of(record.first);
   AppendJsonKey(out, "first");
   *out += '{';
-  AppendText(out, "document", place.document);
-  AppendText(out, "passage", place.passage);
-  AppendCount(out, "byte", place.byte);
+  AppendJsonString(out, "document", place.document);
+  AppendJsonString(out, "passage", place.passage);
+  AppendJsonCount(out, "byte", place.byte);
   *out += '}';
-  if (record.failed) AppendText(out, "failed", QuantityName(*record.failed));
+  if (record.failed) AppendJsonString(out, "failed", QuantityName(*record.failed));
   *out += "}\n";
 }
 
 std::string PassLogTail(const PassRecord& pass) {
   std::string out = "{";
-  AppendText(&out, "kind", "balance");
-  AppendCount(&out, "pass", static_cast<uint64_t>(pass.number));
-  AppendCount(&out, "tokens_in", pass.tokens_in);
-  AppendCount(&out, "accepted", pass.number == 0 ? pass.ruled.size() : pass.accepted.size());
-  AppendCount(&out, "joined", pass.joined);
-  AppendCount(&out, "words_absorbed", pass.words_absorbed);
-  AppendCount(&out, "tokens_out", pass.tokens_out);
+  AppendJsonString(&out, "kind", "balance");
+  AppendJsonCount(&out, "pass", static_cast<uint64_t>(pass.number));
+  AppendJsonCount(&out, "tokens_in", pass.tokens_in);
+  AppendJsonCount(&out, "accepted", pass.number == 0 ? pass.ruled.size() : pass.accepted.size());
+  AppendJsonCount(&out, "joined", pass.joined);
+  AppendJsonCount(&out, "words_absorbed", pass.words_absorbed);
+  AppendJsonCount(&out, "tokens_out", pass.tokens_out);
   out += "}\n";
   return out;
 }
@@ -99,11 +89,11 @@ std::string PassLogHead(const PassRecord& pass, const PassLogContext& context) {
   std::string out = PassLine(pass, context.scores);
   for (const RuledRecord& ruled : pass.ruled) {
     out += '{';
-    AppendText(&out, "kind", "ruled");
-    AppendText(&out, "phrase", ruled.text);
-    AppendCount(&out, "joined", ruled.joined);
-    AppendCount(&out, "documents", ruled.documents);
-    if (!ruled.reason.empty()) AppendText(&out, "reason", ruled.reason);
+    AppendJsonString(&out, "kind", "ruled");
+    AppendJsonString(&out, "phrase", ruled.text);
+    AppendJsonCount(&out, "joined", ruled.joined);
+    AppendJsonCount(&out, "documents", ruled.documents);
+    if (!ruled.reason.empty()) AppendJsonString(&out, "reason", ruled.reason);
     out += "}\n";
   }
   return out;

@@ -4,6 +4,8 @@
 #include <string>
 #include <string_view>
 
+#include "base/strings.h"
+
 namespace phraseweld {
 
 // Appends `text` as the inside of a JSON string: only the quotation mark, the backslash and
@@ -58,6 +60,33 @@ inline void AppendJsonKey(std::string* out, std::string_view key) {
   *out += '"';
   *out += key;
   *out += "\":";
+}
+
+// Appends `"key":count`.
+template <typename Integer>
+void AppendJsonCount(std::string* out, std::string_view key, Integer count) {
+  AppendJsonKey(out, key);
+  AppendTo(out, count);
+}
+
+// Appends `"key":"text"`.
+inline void AppendJsonString(std::string* out, std::string_view key, std::string_view text) {
+  AppendJsonKey(out, key);
+  AppendJsonString(out, text);
+}
+
+// Appends `"key":[...]`, with append(item) for each item.
+template <typename Items, typename Append>
+void AppendJsonList(std::string* out, std::string_view key, const Items& items, Append&& append) {
+  AppendJsonKey(out, key);
+  *out += '[';
+  bool first = true;
+  for (const auto& item : items) {
+    if (!first) *out += ',';
+    first = false;
+    append(item);
+  }
+  *out += ']';
 }
 
 }  // namespace phraseweld

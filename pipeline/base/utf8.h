@@ -8,6 +8,8 @@
 
 namespace phraseweld {
 
+inline constexpr std::string_view kByteOrderMark = "\xEF\xBB\xBF";
+
 // Enough of Unicode to check short texts and to point at places in them. (Texts of the corpus are
 // the business of the room `words`.) All pure; any thread.
 

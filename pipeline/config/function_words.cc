@@ -9,8 +9,6 @@
 namespace phraseweld {
 namespace {
 
-constexpr std::string_view kByteOrderMark = "\xEF\xBB\xBF";
-
 std::vector<std::string> Words(const Source* source, Faults* faults) {
   std::vector<std::string> words;
   size_t line_number = 0;

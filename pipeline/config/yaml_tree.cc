@@ -17,7 +17,6 @@
 namespace phraseweld {
 namespace {
 
-constexpr std::string_view kByteOrderMark = "\xEF\xBB\xBF";
 constexpr size_t kShownText = 60;  // columns of a value that a message repeats
 
 // yaml-cpp takes lines to end in LF and counts lines and columns, in bytes, from 0. It leaves out

@@ -9,26 +9,17 @@
 namespace phraseweld {
 namespace {
 
-void AppendCount(std::string* out, const char* key, uint64_t value) {
-  AppendJsonKey(out, key);
-  absl::StrAppend(out, value);
-}
-
-void AppendText(std::string* out, const char* key, std::string_view text) {
-  AppendJsonKey(out, key);
-  AppendJsonString(out, text);
-}
-
 void AppendDerivation(std::string* out, const Derivation& derivation,
                       const InventoryContext& context) {
   const TypeTable& types = *context.types;
   const bool ruled = !derivation.slot.has_value();
   *out += '{';
-  AppendCount(out, "pass", static_cast<uint64_t>(derivation.pass));
-  AppendText(out, "left", ruled ? "" : types.Text(derivation.slot->left));
-  AppendText(out, "bridge", ruled ? "" : types.Text(context.codes->Words(derivation.slot->bridge)));
-  AppendText(out, "right", ruled ? "" : types.Text(derivation.slot->right));
-  AppendCount(out, "joined", derivation.joined);
+  AppendJsonCount(out, "pass", static_cast<uint64_t>(derivation.pass));
+  AppendJsonString(out, "left", ruled ? "" : types.Text(derivation.slot->left));
+  AppendJsonString(out, "bridge",
+                   ruled ? "" : types.Text(context.codes->Words(derivation.slot->bridge)));
+  AppendJsonString(out, "right", ruled ? "" : types.Text(derivation.slot->right));
+  AppendJsonCount(out, "joined", derivation.joined);
   *out += '}';
 }
 
@@ -52,13 +43,13 @@ void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
 void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& context,
                          std::string* out) {
   *out += '{';
-  AppendText(out, "phrase", phrase.text);
-  AppendCount(out, "words", static_cast<uint64_t>(phrase.words));
-  AppendCount(out, "pass", static_cast<uint64_t>(phrase.made_of.front().pass));
-  AppendCount(out, "occurrences", phrase.occurrences);
-  AppendCount(out, "inside_longer", phrase.inside_longer);
-  AppendCount(out, "documents", phrase.documents);
-  AppendText(out, "surface", phrase.surface);
+  AppendJsonString(out, "phrase", phrase.text);
+  AppendJsonCount(out, "words", static_cast<uint64_t>(phrase.words));
+  AppendJsonCount(out, "pass", static_cast<uint64_t>(phrase.made_of.front().pass));
+  AppendJsonCount(out, "occurrences", phrase.occurrences);
+  AppendJsonCount(out, "inside_longer", phrase.inside_longer);
+  AppendJsonCount(out, "documents", phrase.documents);
+  AppendJsonString(out, "surface", phrase.surface);
   AppendJsonKey(out, "made_of");
   *out += '[';
   for (size_t i = 0; i < phrase.made_of.size(); ++i) {
@@ -75,7 +66,7 @@ void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& con
     }
   }
   *out += '}';
-  if (!phrase.reason.empty()) AppendText(out, "reason", phrase.reason);
+  if (!phrase.reason.empty()) AppendJsonString(out, "reason", phrase.reason);
   *out += "}\n";
 }
 

@@ -49,7 +49,7 @@ absl::Status EntryArray::Write(uint64_t at, absl::Span<const Entry> entries) {
     return absl::AbortedError(
         "the inputs grew while they were read; run again when they are still");
   }
-  std::memcpy(data_ + at, entries.data(), entries.size() * sizeof(Entry));
+  std::copy(entries.begin(), entries.end(), data_ + at);
   return absl::OkStatus();
 }
 

@@ -1,14 +1,13 @@
 #include <utility>
 
 #include "absl/strings/str_cat.h"
+#include "base/utf8.h"
 #include "read/corpus.h"
 #include "read/json_line.h"
 #include "read/lines.h"
 
 namespace phraseweld {
 namespace {
-
-constexpr std::string_view kByteOrderMark = "\xEF\xBB\xBF";
 
 std::vector<std::string> NamesOf(const ReadOptions& options) {
   std::vector<std::string> names = options.fields;

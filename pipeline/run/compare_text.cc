@@ -23,8 +23,6 @@ std::string Correlation(const std::optional<double>& value) {
   return value ? absl::StrFormat("%.3f", *value) : "–";
 }
 
-void AppendTitle(std::string* text, std::string_view title) { AppendTo(text, "\n", title, "\n"); }
-
 void AppendLeftOut(std::string* text, size_t all, size_t most) {
   if (all > most) AppendTo(text, "  … and ", FormatCount(all - most), " more (--json has all)\n");
 }
@@ -100,50 +98,26 @@ void AppendKey(std::string* out, const KeyDifference& key) {
 
 // JSON.
 
-void AppendCount(std::string* out, std::string_view key, uint64_t count) {
-  AppendJsonKey(out, key);
-  AppendTo(out, count);
-}
-
-void AppendString(std::string* out, std::string_view key, std::string_view text) {
-  AppendJsonKey(out, key);
-  AppendJsonString(out, text);
-}
-
-// "key":[...], with append(row) for each row.
-template <typename Rows, typename Append>
-void AppendList(std::string* out, std::string_view key, const Rows& rows, Append&& append) {
-  AppendJsonKey(out, key);
-  *out += '[';
-  bool first = true;
-  for (const auto& row : rows) {
-    if (!first) *out += ',';
-    first = false;
-    append(row);
-  }
-  *out += ']';
-}
-
 std::string RunJson(const ComparedRun& run) {
   std::string out = "{";
-  AppendString(&out, "run", run.folder);
-  AppendString(&out, "job", run.job);
-  AppendString(&out, "version", run.version);
-  AppendCount(&out, "documents", run.documents);
-  AppendCount(&out, "words", run.words);
-  AppendCount(&out, "passes", run.passes);
-  AppendCount(&out, "phrases", run.phrases);
-  AppendCount(&out, "words_in_phrases", run.words_in_phrases);
+  AppendJsonString(&out, "run", run.folder);
+  AppendJsonString(&out, "job", run.job);
+  AppendJsonString(&out, "version", run.version);
+  AppendJsonCount(&out, "documents", run.documents);
+  AppendJsonCount(&out, "words", run.words);
+  AppendJsonCount(&out, "passes", run.passes);
+  AppendJsonCount(&out, "phrases", run.phrases);
+  AppendJsonCount(&out, "words_in_phrases", run.words_in_phrases);
   return out + "}";
 }
 
 // What a phrase is in one run, without its text.
 void AppendFacts(std::string* out, const ComparedPhrase& phrase) {
-  AppendCount(out, "pass", static_cast<uint64_t>(phrase.pass));
-  AppendCount(out, "rank", phrase.rank);
-  AppendCount(out, "occurrences", phrase.occurrences);
-  AppendCount(out, "inside_longer", phrase.inside_longer);
-  AppendCount(out, "documents", phrase.documents);
+  AppendJsonCount(out, "pass", static_cast<uint64_t>(phrase.pass));
+  AppendJsonCount(out, "rank", phrase.rank);
+  AppendJsonCount(out, "occurrences", phrase.occurrences);
+  AppendJsonCount(out, "inside_longer", phrase.inside_longer);
+  AppendJsonCount(out, "documents", phrase.documents);
   AppendJsonKey(out, "scores");
   *out += '{';
   for (const auto& [quantity, value] : phrase.scores) {
@@ -155,18 +129,18 @@ void AppendFacts(std::string* out, const ComparedPhrase& phrase) {
 
 void AppendOneSidedJson(std::string* out, const OneSidedPhrase& phrase) {
   *out += '{';
-  AppendString(out, "phrase", phrase.phrase.phrase);
-  AppendCount(out, "words", static_cast<uint64_t>(phrase.phrase.words));
+  AppendJsonString(out, "phrase", phrase.phrase.phrase);
+  AppendJsonCount(out, "words", static_cast<uint64_t>(phrase.phrase.words));
   AppendFacts(out, phrase.phrase);
-  AppendString(out, "absence", kAbsenceNames[static_cast<size_t>(phrase.absence)]);
-  AppendString(out, "why", phrase.why);
+  AppendJsonString(out, "absence", kAbsenceNames[static_cast<size_t>(phrase.absence)]);
+  AppendJsonString(out, "why", phrase.why);
   *out += '}';
 }
 
 void AppendKeptJson(std::string* out, const KeptPhrase& kept) {
   *out += '{';
-  AppendString(out, "phrase", kept.left.phrase);
-  AppendCount(out, "words", static_cast<uint64_t>(kept.left.words));
+  AppendJsonString(out, "phrase", kept.left.phrase);
+  AppendJsonCount(out, "words", static_cast<uint64_t>(kept.left.words));
   AppendJsonKey(out, "changed");
   *out += kept.changed ? "true" : "false";
   for (const auto* side : {&kept.left, &kept.right}) {
@@ -218,28 +192,28 @@ std::string ComparisonJson(const RunComparison& comparison) {
   out += RunJson(comparison.left);
   AppendJsonKey(&out, "right");
   out += RunJson(comparison.right);
-  AppendList(&out, "keys", comparison.keys, [&out](const KeyDifference& key) {
+  AppendJsonList(&out, "keys", comparison.keys, [&out](const KeyDifference& key) {
     out += '{';
-    AppendString(&out, "key", key.key);
+    AppendJsonString(&out, "key", key.key);
     AppendOptional(&out, "left", key.left);
     AppendOptional(&out, "right", key.right);
     AppendJsonKey(&out, "shapes_phrases");
     out += key.shapes_phrases ? "true}" : "false}";
   });
-  AppendList(&out, "inputs", comparison.inputs, [&out](const InputDifference& input) {
+  AppendJsonList(&out, "inputs", comparison.inputs, [&out](const InputDifference& input) {
     out += '{';
-    AppendString(&out, "name", input.name);
-    AppendString(&out, "change", kInputChangeNames[static_cast<size_t>(input.change)]);
-    AppendCount(&out, "left_bytes", input.left_bytes);
-    AppendCount(&out, "right_bytes", input.right_bytes);
+    AppendJsonString(&out, "name", input.name);
+    AppendJsonString(&out, "change", kInputChangeNames[static_cast<size_t>(input.change)]);
+    AppendJsonCount(&out, "left_bytes", input.left_bytes);
+    AppendJsonCount(&out, "right_bytes", input.right_bytes);
     out += '}';
   });
   AppendJsonKey(&out, "input_order_differs");
   out += comparison.input_order_differs ? "true" : "false";
-  AppendList(&out, "agreement", comparison.agreements, [&out](const OrderAgreement& agreement) {
+  AppendJsonList(&out, "agreement", comparison.agreements, [&out](const OrderAgreement& agreement) {
     out += '{';
-    AppendString(&out, "by", agreement.by);
-    AppendCount(&out, "phrases", agreement.phrases);
+    AppendJsonString(&out, "by", agreement.by);
+    AppendJsonCount(&out, "phrases", agreement.phrases);
     AppendOptional(&out, "spearman", agreement.spearman);
     AppendOptional(&out, "kendall_tau_b", agreement.kendall);
     out += '}';
@@ -248,9 +222,9 @@ std::string ComparisonJson(const RunComparison& comparison) {
     out += '\n';
     AppendOneSidedJson(&out, phrase);
   };
-  AppendList(&out, "gained", comparison.gained, one_sided);
-  AppendList(&out, "lost", comparison.lost, one_sided);
-  AppendList(&out, "kept", comparison.kept, [&out](const KeptPhrase& kept) {
+  AppendJsonList(&out, "gained", comparison.gained, one_sided);
+  AppendJsonList(&out, "lost", comparison.lost, one_sided);
+  AppendJsonList(&out, "kept", comparison.kept, [&out](const KeptPhrase& kept) {
     out += '\n';
     AppendKeptJson(&out, kept);
   });

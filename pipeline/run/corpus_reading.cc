@@ -11,15 +11,15 @@
 namespace phraseweld {
 namespace {
 
-struct Item {
+struct EncodedItem {
   Block block;
   std::vector<Entry> entries;
   uint64_t begin = 0;
 };
 
 // What a thread needs of its own.
-struct Worker {
-  Worker(const std::vector<InputFile>& inputs, const ReadOptions& options)
+struct EncodingWorker {
+  EncodingWorker(const std::vector<InputFile>& inputs, const ReadOptions& options)
       : parser(inputs, options) {}
   BlockParser parser;
   std::unique_ptr<Encoder> encoder;
@@ -86,10 +86,11 @@ absl::Status FitsMemory(const Job& job, const Vocabulary& vocabulary, int lanes)
       vocabulary.memory() + uint64_t{vocabulary.size()} * 8 * static_cast<uint64_t>(lanes + 2);
   const uint64_t least = 2 * words;
   if (least <= job.limits.memory) return absl::OkStatus();
-  return absl::ResourceExhaustedError(absl::StrCat(
-      "limits.memory: ", FormatBytes(job.limits.memory), " is too little for this corpus; its ",
-      FormatCount(vocabulary.size()), " different words alone take ", RoundedBytes(static_cast<double>(words)),
-      "; ", FormatBytes((least / kMebibyte + 1) * kMebibyte), " would do"));
+  return absl::ResourceExhaustedError(
+      absl::StrCat("limits.memory: ", FormatBytes(job.limits.memory),
+                   " is too little for this corpus; its ", FormatCount(vocabulary.size()),
+                   " different words alone take ", RoundedBytes(static_cast<double>(words)), "; ",
+                   FormatBytes((least / kMebibyte + 1) * kMebibyte), " would do"));
 }
 
 }  // namespace
@@ -108,14 +109,14 @@ absl::Status EncodeCorpus(const Job& job, const std::vector<InputFile>& inputs,
   }
   const ReadOptions read_options = ReadOptionsOf(job, plan.block_bytes);
   BlockSource source(inputs, read_options);
-  std::vector<std::unique_ptr<Worker>> workers(static_cast<size_t>(lanes.lanes()));
+  std::vector<std::unique_ptr<EncodingWorker>> workers(static_cast<size_t>(lanes.lanes()));
   std::atomic<uint64_t> bytes_done{0};
   uint64_t entries = 0;
-  ThreadLanes::Steps<Item> steps;
-  steps.make = [&](Item* item) { return source.Next(&item->block); };
-  steps.work = [&](int lane, Item* item) -> absl::Status {
+  ThreadLanes::Steps<EncodedItem> steps;
+  steps.make = [&](EncodedItem* item) { return source.Next(&item->block); };
+  steps.work = [&](int lane, EncodedItem* item) -> absl::Status {
     auto& worker = workers[static_cast<size_t>(lane)];
-    if (worker == nullptr) worker = std::make_unique<Worker>(inputs, read_options);
+    if (worker == nullptr) worker = std::make_unique<EncodingWorker>(inputs, read_options);
     // The encoder remembers words, on the understanding that it walks forward.
     if (worker->encoder == nullptr || item->block.index < worker->next_index) {
       worker->encoder = std::make_unique<Encoder>(WordOptionsOf(job), &corpus->vocabulary);
@@ -126,7 +127,7 @@ absl::Status EncodeCorpus(const Job& job, const std::vector<InputFile>& inputs,
     observer.advance(bytes_done.fetch_add(item->block.bytes.size()) + item->block.bytes.size());
     return absl::OkStatus();
   };
-  steps.place = [&](Item* item) {
+  steps.place = [&](EncodedItem* item) {
     item->begin = entries;
     entries += item->entries.size();
     corpus->blocks.push_back({item->begin, corpus->documents});
@@ -135,7 +136,9 @@ absl::Status EncodeCorpus(const Job& job, const std::vector<InputFile>& inputs,
     corpus->text_bytes += item->block.bytes.size();
     return absl::OkStatus();
   };
-  steps.store = [&](Item* item) { return corpus->entries->Write(item->begin, item->entries); };
+  steps.store = [&](EncodedItem* item) {
+    return corpus->entries->Write(item->begin, item->entries);
+  };
   PW_RETURN_IF_ERROR(lanes.Pipeline(plan.blocks_in_flight, steps));
   workers.clear();
   corpus->digests = source.digests();

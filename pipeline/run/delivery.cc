@@ -13,13 +13,14 @@
 namespace phraseweld {
 namespace {
 
-struct Item {
+struct DeliveryItem {
   Block block;
   BlockOutput output;
 };
 
-struct Worker {
-  Worker(const std::vector<InputFile>& inputs, const ReadOptions& options, const WordOptions& words)
+struct DeliveryWorker {
+  DeliveryWorker(const std::vector<InputFile>& inputs, const ReadOptions& options,
+                 const WordOptions& words)
       : parser(inputs, options), splitter(words) {}
   BlockParser parser;
   WordSplitter splitter;
@@ -39,8 +40,8 @@ std::vector<uint64_t> WantedPositions(const PassResults& results) {
   return wanted;
 }
 
-absl::Status WalkBlock(const WalkOptions& options, const EncodedCorpus& corpus, Worker* worker,
-                       Item* item) {
+absl::Status WalkBlock(const WalkOptions& options, const EncodedCorpus& corpus,
+                       DeliveryWorker* worker, DeliveryItem* item) {
   const Block& block = item->block;
   if (block.index >= corpus.blocks.size()) {
     return absl::AbortedError("an input grew while the run was reading it; run again");
@@ -106,7 +107,7 @@ class CorpusWriter {
     return absl::OkStatus();
   }
 
-  absl::Status Write(const Item& item) {
+  absl::Status Write(const DeliveryItem& item) {
     const Block& block = item.block;
     if (block.file_offset == 0) PW_RETURN_IF_ERROR(BeginFile(block.file));
     WriteSurfaces(item.output);
@@ -272,21 +273,21 @@ absl::Status DeliverCorpus(const Job& job, const std::vector<InputFile>& inputs,
   BlockSource source(inputs, read_options);
   CorpusWriter writer(job, inputs, folder, files, corpus, options.source_joiner, delivery, written);
   PW_RETURN_IF_ERROR(writer.Begin());
-  std::vector<std::unique_ptr<Worker>> workers(static_cast<size_t>(lanes.lanes()));
+  std::vector<std::unique_ptr<DeliveryWorker>> workers(static_cast<size_t>(lanes.lanes()));
   std::atomic<uint64_t> bytes_done{0};
-  ThreadLanes::Steps<Item> steps;
-  steps.make = [&](Item* item) { return source.Next(&item->block); };
-  steps.work = [&](int lane, Item* item) -> absl::Status {
+  ThreadLanes::Steps<DeliveryItem> steps;
+  steps.make = [&](DeliveryItem* item) { return source.Next(&item->block); };
+  steps.work = [&](int lane, DeliveryItem* item) -> absl::Status {
     auto& worker = workers[static_cast<size_t>(lane)];
     if (worker == nullptr) {
-      worker = std::make_unique<Worker>(inputs, read_options, WordOptionsOf(job));
+      worker = std::make_unique<DeliveryWorker>(inputs, read_options, WordOptionsOf(job));
     }
     PW_RETURN_IF_ERROR(worker->parser.Parse(&item->block));
     PW_RETURN_IF_ERROR(WalkBlock(options, corpus, worker.get(), item));
     observer.advance(bytes_done.fetch_add(item->block.bytes.size()) + item->block.bytes.size());
     return absl::OkStatus();
   };
-  steps.place = [&](Item* item) { return writer.Write(*item); };
+  steps.place = [&](DeliveryItem* item) { return writer.Write(*item); };
   PW_RETURN_IF_ERROR(lanes.Pipeline(plan.blocks_in_flight, steps));
   PW_RETURN_IF_ERROR(SameInputs(inputs, corpus.digests, source.digests()));
   return writer.End();

@@ -213,11 +213,11 @@ class Grader {
   absl::flat_hash_set<std::string> known_;
 };
 
+}  // namespace
+
 double Ratio(uint64_t part, uint64_t whole) {
   return whole == 0 ? 0 : static_cast<double>(part) / static_cast<double>(whole);
 }
-
-}  // namespace
 
 double GradeReport::Recall() const { return Ratio(found_in_reach, in_reach); }
 

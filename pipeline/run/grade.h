@@ -61,6 +61,9 @@ struct GradeMiss {
   std::string why;  // a sentence without a full stop
 };
 
+// 0 where `whole` is 0.
+double Ratio(uint64_t part, uint64_t whole);
+
 struct GradeReport {
   std::string run;
   std::string list;

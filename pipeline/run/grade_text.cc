@@ -17,10 +17,6 @@ namespace {
 
 constexpr std::string_view kNothing = "–";
 
-double Ratio(uint64_t part, uint64_t whole) {
-  return whole == 0 ? 0 : static_cast<double>(part) / static_cast<double>(whole);
-}
-
 std::string ShareOf(uint64_t part, uint64_t whole) {
   return whole == 0 ? std::string(kNothing) : Share(Ratio(part, whole));
 }
@@ -113,9 +109,14 @@ std::string MissesText(const GradeReport& report, size_t most) {
 
 // JSON.
 
-void AppendCount(std::string* out, std::string_view key, uint64_t count) {
-  AppendJsonKey(out, key);
-  AppendTo(out, count);
+// "key":[{...},...], with append(row) for what is inside each object.
+template <typename Rows, typename Append>
+void AppendObjects(std::string* out, std::string_view key, const Rows& rows, Append&& append) {
+  AppendJsonList(out, key, rows, [&](const auto& row) {
+    *out += '{';
+    append(row);
+    *out += '}';
+  });
 }
 
 void AppendValue(std::string* out, std::string_view key, double value) {
@@ -129,44 +130,25 @@ void AppendShare(std::string* out, std::string_view key, uint64_t part, uint64_t
   *out += whole == 0 ? "null" : FormatScore(Ratio(part, whole));
 }
 
-void AppendString(std::string* out, std::string_view key, std::string_view text) {
-  AppendJsonKey(out, key);
-  AppendJsonString(out, text);
-}
-
-template <typename Rows, typename Append>
-void AppendList(std::string* out, std::string_view key, const Rows& rows, Append&& append) {
-  AppendJsonKey(out, key);
-  *out += '[';
-  bool first = true;
-  for (const auto& row : rows) {
-    *out += first ? "{" : ",{";
-    first = false;
-    append(row);
-    *out += '}';
-  }
-  *out += ']';
-}
-
 void AppendCutoffs(std::string* out, std::string_view key, const std::vector<GradeCutoff>& cutoffs,
                    uint64_t in_reach) {
-  AppendList(out, key, cutoffs, [&](const GradeCutoff& cutoff) {
-    AppendCount(out, "best", cutoff.best);
-    AppendCount(out, "hits", cutoff.hits);
+  AppendObjects(out, key, cutoffs, [&](const GradeCutoff& cutoff) {
+    AppendJsonCount(out, "best", cutoff.best);
+    AppendJsonCount(out, "hits", cutoff.hits);
     AppendShare(out, "precision", cutoff.hits, cutoff.best);
     AppendShare(out, "recall", cutoff.hits, in_reach);
   });
 }
 
 void AppendPool(std::string* out, const GradePool& pool, uint64_t in_reach) {
-  AppendString(out, "phrases_of", pool.name);
-  AppendCount(out, "candidates", pool.candidates);
-  AppendCount(out, "hits", pool.hits);
-  AppendList(out, "gates", pool.gates, [&](const GradeGate& gate) {
-    AppendString(out, "on", QuantityName(gate.on));
+  AppendJsonString(out, "phrases_of", pool.name);
+  AppendJsonCount(out, "candidates", pool.candidates);
+  AppendJsonCount(out, "hits", pool.hits);
+  AppendObjects(out, "gates", pool.gates, [&](const GradeGate& gate) {
+    AppendJsonString(out, "on", QuantityName(gate.on));
     AppendValue(out, "least", gate.least);
-    AppendCount(out, "chosen", gate.chosen);
-    AppendCount(out, "hits", gate.hits);
+    AppendJsonCount(out, "chosen", gate.chosen);
+    AppendJsonCount(out, "hits", gate.hits);
     AppendShare(out, "precision", gate.hits, gate.chosen);
     AppendShare(out, "recall", gate.hits, in_reach);
     AppendValue(out, "f1", F1(gate.hits, gate.chosen, in_reach));
@@ -200,38 +182,38 @@ std::string GradeText(const GradeReport& report, size_t most) {
 
 std::string GradeJson(const GradeReport& report) {
   std::string out = "{";
-  AppendString(&out, "run", report.run);
-  AppendString(&out, "list", report.list);
-  AppendCount(&out, "entries", report.entries);
-  AppendCount(&out, "short_lines", report.short_lines);
-  AppendCount(&out, "double_lines", report.double_lines);
-  AppendCount(&out, "in_source", report.in_source);
-  AppendCount(&out, "across_breaks_alone", report.across_breaks_alone);
-  AppendCount(&out, "least_occurrences", report.least_occurrences);
-  AppendCount(&out, "in_reach", report.in_reach);
-  AppendCount(&out, "found", report.found);
-  AppendCount(&out, "found_in_reach", report.found_in_reach);
-  AppendCount(&out, "phrases", report.phrases);
+  AppendJsonString(&out, "run", report.run);
+  AppendJsonString(&out, "list", report.list);
+  AppendJsonCount(&out, "entries", report.entries);
+  AppendJsonCount(&out, "short_lines", report.short_lines);
+  AppendJsonCount(&out, "double_lines", report.double_lines);
+  AppendJsonCount(&out, "in_source", report.in_source);
+  AppendJsonCount(&out, "across_breaks_alone", report.across_breaks_alone);
+  AppendJsonCount(&out, "least_occurrences", report.least_occurrences);
+  AppendJsonCount(&out, "in_reach", report.in_reach);
+  AppendJsonCount(&out, "found", report.found);
+  AppendJsonCount(&out, "found_in_reach", report.found_in_reach);
+  AppendJsonCount(&out, "phrases", report.phrases);
   AppendShare(&out, "recall", report.found_in_reach, report.in_reach);
   AppendShare(&out, "precision", report.found, report.phrases);
-  AppendString(&out, "rank_by", QuantityName(report.rank_by));
+  AppendJsonString(&out, "rank_by", QuantityName(report.rank_by));
   AppendCutoffs(&out, "by_score", report.by_score, report.in_reach);
   AppendCutoffs(&out, "by_occurrences", report.by_occurrences, report.in_reach);
   AppendCutoffs(&out, "adjacent_pairs", report.adjacent_pairs, report.in_reach);
-  AppendList(&out, "rankings", report.rankings, [&out](const GradeRanking& ranking) {
-    AppendString(&out, "by", QuantityName(ranking.by));
+  AppendObjects(&out, "rankings", report.rankings, [&out](const GradeRanking& ranking) {
+    AppendJsonString(&out, "by", QuantityName(ranking.by));
     AppendValue(&out, "average_precision", ranking.average_precision);
   });
-  AppendList(&out, "best_gates", report.pools,
-             [&](const GradePool& pool) { AppendPool(&out, pool, report.in_reach); });
-  AppendCount(&out, "missed", report.missed);
-  AppendList(&out, "misses", report.misses, [&out](const GradeMiss& miss) {
-    AppendString(&out, "phrase", miss.phrase);
-    AppendCount(&out, "occurrences", miss.occurrences);
-    AppendCount(&out, "documents", miss.documents);
-    AppendCount(&out, "across_breaks", miss.across_breaks);
-    AppendString(&out, "reason", miss.reason);
-    AppendString(&out, "why", miss.why);
+  AppendObjects(&out, "best_gates", report.pools,
+                [&](const GradePool& pool) { AppendPool(&out, pool, report.in_reach); });
+  AppendJsonCount(&out, "missed", report.missed);
+  AppendObjects(&out, "misses", report.misses, [&out](const GradeMiss& miss) {
+    AppendJsonString(&out, "phrase", miss.phrase);
+    AppendJsonCount(&out, "occurrences", miss.occurrences);
+    AppendJsonCount(&out, "documents", miss.documents);
+    AppendJsonCount(&out, "across_breaks", miss.across_breaks);
+    AppendJsonString(&out, "reason", miss.reason);
+    AppendJsonString(&out, "why", miss.why);
   });
   return out + "}\n";
 }

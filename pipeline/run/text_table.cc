@@ -77,6 +77,8 @@ std::string WrappedText(std::string_view text, size_t indent) {
   return Concat(wrapped, std::string(indent, ' '), line, "\n");
 }
 
+void AppendTitle(std::string* text, std::string_view title) { AppendTo(text, "\n", title, "\n"); }
+
 std::string Percent(double part, double whole) {
   return whole > 0 ? absl::StrFormat("%.1f %%", 100 * part / whole) : "–";
 }

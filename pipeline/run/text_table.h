@@ -33,6 +33,9 @@ std::string Shown(std::string_view text, size_t width);
 // word that is longer stands out.
 std::string WrappedText(std::string_view text, size_t indent);
 
+// Appends the title of a part of a report, after an empty line.
+void AppendTitle(std::string* text, std::string_view title);
+
 // "12.3 %", of 0 "–".
 std::string Percent(double part, double whole);
 

@@ -78,8 +78,6 @@ void AppendNode(std::string* out, const TraceNode& node, const std::string& firs
   }
 }
 
-void AppendTitle(std::string* out, std::string_view title) { AppendTo(out, "\n", title, "\n"); }
-
 void AppendParts(std::string* out, const Trace& trace) {
   AppendTitle(out, "Parts");
   for (const TracePart& part : trace.parts) {

@@ -31,16 +31,6 @@ struct Row {
   std::string reason;
 };
 
-void AppendText(std::string* line, std::string_view key, std::string_view text) {
-  AppendJsonKey(line, key);
-  AppendJsonString(line, text);
-}
-
-void AppendCount(std::string* line, std::string_view key, uint64_t value) {
-  AppendJsonKey(line, key);
-  AppendTo(line, value);
-}
-
 std::vector<Row> ExpectedRows(const ClaimedRun& run, const RecountRules& rules,
                               const Recounter& recounter) {
   std::map<uint32_t, Row> by_type;
@@ -88,22 +78,22 @@ const Made* Scored(const Row& row) {
 std::string JsonLine(const ClaimedRun& run, const Row& row) {
   const PhraseRecount& phrase = *row.phrase;
   std::string line = "{";
-  AppendText(&line, "phrase", row.text);
-  AppendCount(&line, "words", row.forms.size());
-  AppendCount(&line, "pass", row.made_of.front().pass);
-  AppendCount(&line, "occurrences", phrase.occurrences);
-  AppendCount(&line, "inside_longer", phrase.made - phrase.occurrences);
-  AppendCount(&line, "documents", phrase.documents);
-  AppendText(&line, "surface", phrase.surface);
+  AppendJsonString(&line, "phrase", row.text);
+  AppendJsonCount(&line, "words", row.forms.size());
+  AppendJsonCount(&line, "pass", row.made_of.front().pass);
+  AppendJsonCount(&line, "occurrences", phrase.occurrences);
+  AppendJsonCount(&line, "inside_longer", phrase.made - phrase.occurrences);
+  AppendJsonCount(&line, "documents", phrase.documents);
+  AppendJsonString(&line, "surface", phrase.surface);
   AppendJsonKey(&line, "made_of");
   std::string ways;
   for (const Made& made : row.made_of) {
     std::string way = "{";
-    AppendCount(&way, "pass", made.pass);
-    AppendText(&way, "left", made.left);
-    AppendText(&way, "bridge", made.bridge);
-    AppendText(&way, "right", made.right);
-    AppendCount(&way, "joined", made.joined);
+    AppendJsonCount(&way, "pass", made.pass);
+    AppendJsonString(&way, "left", made.left);
+    AppendJsonString(&way, "bridge", made.bridge);
+    AppendJsonString(&way, "right", made.right);
+    AppendJsonCount(&way, "joined", made.joined);
     AppendTo(&ways, ways.empty() ? "" : ",", way, "}");
   }
   AppendTo(&line, "[", ways, "]");
@@ -116,7 +106,7 @@ std::string JsonLine(const ClaimedRun& run, const Row& row) {
     }
   }
   AppendTo(&line, scores, "}");
-  if (!row.reason.empty()) AppendText(&line, "reason", row.reason);
+  if (!row.reason.empty()) AppendJsonString(&line, "reason", row.reason);
   return line + "}";
 }
 

@@ -19,16 +19,6 @@ namespace {
 
 constexpr size_t kMostNearMisses = 200;  // section 8 of the semantics
 
-void AppendCount(std::string* line, std::string_view key, uint64_t value) {
-  AppendJsonKey(line, key);
-  AppendTo(line, value);
-}
-
-void AppendText(std::string* line, std::string_view key, std::string_view text) {
-  AppendJsonKey(line, key);
-  AppendJsonString(line, text);
-}
-
 void AppendScores(std::string* line, const PassOptions& options, const SlotTable& table) {
   AppendJsonKey(line, "scores");
   *line += '{';
@@ -137,13 +127,13 @@ class PassCheck {
   std::vector<std::string> Lines() const {
     std::vector<std::string> lines;
     std::string& head = lines.emplace_back("{\"kind\":\"pass\"");
-    AppendCount(&head, "pass", number_);
-    AppendText(&head, "name", options_.name);
-    AppendCount(&head, "tokens_in", recount_.tokens_in);
-    AppendCount(&head, "types_in", recount_.types_in);
-    AppendCount(&head, "slots", recount_.slots);
-    AppendCount(&head, "slot_types", log_.head.slot_types);
-    AppendText(&head, "rank_by", QuantityName(options_.rank_by));
+    AppendJsonCount(&head, "pass", number_);
+    AppendJsonString(&head, "name", options_.name);
+    AppendJsonCount(&head, "tokens_in", recount_.tokens_in);
+    AppendJsonCount(&head, "types_in", recount_.types_in);
+    AppendJsonCount(&head, "slots", recount_.slots);
+    AppendJsonCount(&head, "slot_types", log_.head.slot_types);
+    AppendJsonString(&head, "rank_by", QuantityName(options_.rank_by));
     AppendJsonKey(&head, "accept");
     head += '{';
     for (const Gate& gate : options_.accept) {
@@ -161,12 +151,12 @@ class PassCheck {
       lines.push_back(SlotLine("near_miss", RankOf(log_.near_misses, i), slot, failed));
     }
     std::string& balance = lines.emplace_back("{\"kind\":\"balance\"");
-    AppendCount(&balance, "pass", number_);
-    AppendCount(&balance, "tokens_in", recount_.tokens_in);
-    AppendCount(&balance, "accepted", accepted_.size());
-    AppendCount(&balance, "joined", recount_.joined);
-    AppendCount(&balance, "words_absorbed", recount_.words_absorbed);
-    AppendCount(&balance, "tokens_out", recount_.tokens_out);
+    AppendJsonCount(&balance, "pass", number_);
+    AppendJsonCount(&balance, "tokens_in", recount_.tokens_in);
+    AppendJsonCount(&balance, "accepted", accepted_.size());
+    AppendJsonCount(&balance, "joined", recount_.joined);
+    AppendJsonCount(&balance, "words_absorbed", recount_.words_absorbed);
+    AppendJsonCount(&balance, "tokens_out", recount_.tokens_out);
     balance += '}';
     return lines;
   }
@@ -181,29 +171,29 @@ class PassCheck {
     const SlotTable& table = slot.count->table;
     if (table.n == 0) return "";
     std::string line = "{";
-    AppendText(&line, "kind", kind);
-    AppendCount(&line, "rank", rank);
-    AppendText(&line, "phrase", slot.text);
-    AppendText(&line, "left", slot.left_text);
-    AppendText(&line, "bridge", slot.bridge_text);
-    AppendText(&line, "right", slot.right_text);
-    AppendCount(&line, "n", table.n);
-    AppendCount(&line, "left_slots", table.left);
-    AppendCount(&line, "right_slots", table.right);
-    AppendCount(&line, "slots", table.total);
+    AppendJsonString(&line, "kind", kind);
+    AppendJsonCount(&line, "rank", rank);
+    AppendJsonString(&line, "phrase", slot.text);
+    AppendJsonString(&line, "left", slot.left_text);
+    AppendJsonString(&line, "bridge", slot.bridge_text);
+    AppendJsonString(&line, "right", slot.right_text);
+    AppendJsonCount(&line, "n", table.n);
+    AppendJsonCount(&line, "left_slots", table.left);
+    AppendJsonCount(&line, "right_slots", table.right);
+    AppendJsonCount(&line, "slots", table.total);
     AppendJsonKey(&line, "expected");
     line += FormatScore(Round9(Expected(table)));
-    AppendCount(&line, "documents", table.documents);
+    AppendJsonCount(&line, "documents", table.documents);
     AppendScores(&line, options_, table);
-    AppendCount(&line, "joined", slot.count->joined);
-    AppendCount(&line, "yielded", slot.count->yielded);
+    AppendJsonCount(&line, "joined", slot.count->joined);
+    AppendJsonCount(&line, "yielded", slot.count->yielded);
     AppendJsonKey(&line, "first");
     std::string place = "{";
-    AppendText(&place, "document", slot.count->first.document);
-    AppendText(&place, "passage", slot.count->first.passage);
-    AppendCount(&place, "byte", slot.count->first.byte);
+    AppendJsonString(&place, "document", slot.count->first.document);
+    AppendJsonString(&place, "passage", slot.count->first.passage);
+    AppendJsonCount(&place, "byte", slot.count->first.byte);
     AppendTo(&line, place, "}");
-    if (failed.has_value()) AppendText(&line, "failed", QuantityName(*failed));
+    if (failed.has_value()) AppendJsonString(&line, "failed", QuantityName(*failed));
     line += '}';
     return line;
   }
@@ -314,24 +304,24 @@ std::vector<std::string> RulingLines(const ClaimedRun& run, const Recounter& rec
   const RulingsRecount& recount = recounter.rulings();
   std::vector<std::string> lines;
   std::string& head = lines.emplace_back("{\"kind\":\"pass\",\"pass\":0,\"name\":\"rulings\"");
-  AppendCount(&head, "tokens_in", recount.tokens_in);
-  AppendCount(&head, "types_in", recount.types_in);
+  AppendJsonCount(&head, "tokens_in", recount.tokens_in);
+  AppendJsonCount(&head, "types_in", recount.types_in);
   head += '}';
   for (size_t i = 0; i < run.always.size(); ++i) {
     std::string& line = lines.emplace_back("{\"kind\":\"ruled\"");
-    AppendText(&line, "phrase", Join(run.always[i]->forms, " "));
-    AppendCount(&line, "joined", recount.ruled[i].joined);
-    AppendCount(&line, "documents", recount.ruled[i].documents);
+    AppendJsonString(&line, "phrase", Join(run.always[i]->forms, " "));
+    AppendJsonCount(&line, "joined", recount.ruled[i].joined);
+    AppendJsonCount(&line, "documents", recount.ruled[i].documents);
     const std::string& reason = run.always[i]->ruling.reason;
-    if (!reason.empty()) AppendText(&line, "reason", reason);
+    if (!reason.empty()) AppendJsonString(&line, "reason", reason);
     line += '}';
   }
   std::string& balance = lines.emplace_back("{\"kind\":\"balance\",\"pass\":0");
-  AppendCount(&balance, "tokens_in", recount.tokens_in);
-  AppendCount(&balance, "accepted", run.always.size());
-  AppendCount(&balance, "joined", recount.joined);
-  AppendCount(&balance, "words_absorbed", recount.words_absorbed);
-  AppendCount(&balance, "tokens_out", recount.tokens_out);
+  AppendJsonCount(&balance, "tokens_in", recount.tokens_in);
+  AppendJsonCount(&balance, "accepted", run.always.size());
+  AppendJsonCount(&balance, "joined", recount.joined);
+  AppendJsonCount(&balance, "words_absorbed", recount.words_absorbed);
+  AppendJsonCount(&balance, "tokens_out", recount.tokens_out);
   balance += '}';
   return lines;
 }

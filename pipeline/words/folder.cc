@@ -6,10 +6,10 @@
 #include <unicode/utf8.h>
 
 #include <algorithm>
-#include <stdexcept>
 
 #include "absl/strings/str_replace.h"
 #include "words/ascii.h"
+#include "words/icu_error.h"
 #include "words/splitter.h"
 
 namespace phraseweld {
@@ -17,19 +17,15 @@ namespace {
 
 using Normalizer = const icu::Normalizer2* (*)(UErrorCode&);
 
-void Require(UErrorCode error) {
-  if (U_FAILURE(error)) throw std::runtime_error(u_errorName(error));  // ICU's data is part of its library; no answer without it
-}
-
 std::string Normalize(Normalizer instance, std::string_view text) {
   UErrorCode error = U_ZERO_ERROR;
   const icu::Normalizer2* normalizer = instance(error);
-  Require(error);
+  RequireIcu(error);
   std::string out;
   icu::StringByteSink<std::string> sink(&out, static_cast<int32_t>(text.size()));
   normalizer->normalizeUTF8(0, icu::StringPiece(text.data(), static_cast<int32_t>(text.size())),
                             sink, nullptr, error);
-  Require(error);
+  RequireIcu(error);
   return out;
 }
 
@@ -39,7 +35,7 @@ std::string FoldCase(std::string_view text) {
   icu::StringByteSink<std::string> sink(&out, static_cast<int32_t>(text.size()));
   icu::CaseMap::utf8Fold(0, icu::StringPiece(text.data(), static_cast<int32_t>(text.size())), sink,
                          nullptr, error);
-  Require(error);
+  RequireIcu(error);
   return out;
 }
 

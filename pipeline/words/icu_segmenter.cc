@@ -6,24 +6,14 @@
 #include <unicode/utf16.h>
 #include <unicode/utf8.h>
 
-#include <stdexcept>
+#include "words/icu_error.h"
 
 namespace phraseweld {
-namespace {
-
-// ICU's root rules are compiled into its data library: a failure here is a broken installation or
-// the end of memory, and there is no answer to give.
-void Require(UErrorCode error) {
-  if (U_FAILURE(error)) throw std::runtime_error(u_errorName(error));
-}
-
-}  // namespace
-
 IcuSegmenter::IcuSegmenter() {
   UErrorCode error = U_ZERO_ERROR;
   std::unique_ptr<icu::BreakIterator> made(
       icu::BreakIterator::createWordInstance(icu::Locale::getRoot(), error));
-  Require(error);
+  RequireIcu(error);
   // ICU documents that its factories make no other kind.
   iterator_.reset(static_cast<icu::RuleBasedBreakIterator*>(made.release()));
   // An iterator loads a dictionary when it first meets its script, and until then may treat a mark
@@ -58,7 +48,7 @@ void IcuSegmenter::AppendWords(std::string_view text, uint32_t base, std::vector
   UText utext = UTEXT_INITIALIZER;
   utext_openUChars(&utext, units_.data(), static_cast<int64_t>(unit), &error);
   iterator_->setText(&utext, error);
-  Require(error);
+  RequireIcu(error);
   int32_t begin = iterator_->first();
   for (int32_t end = iterator_->next(); end != icu::BreakIterator::DONE; end = iterator_->next()) {
     const int32_t status = iterator_->getRuleStatus();

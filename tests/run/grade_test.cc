@@ -519,7 +519,8 @@ TEST_F(GradeTest, TextFitsTheTerminalAndJsonSaysTheSame) {
   GradeReport report = GradeBy("tide gauge\nbank light\nthe tide\n", options);
   report.run = "runs/harbour";
   report.list = "known.txt";
-  for (const std::string_view line : Split(GradeText(report, 5), '\n')) {
+  const std::string table = GradeText(report, 5);
+  for (const std::string_view line : Split(table, '\n')) {
     EXPECT_LE(DisplayWidth(line), 80u) << line;
   }
   const std::string json = GradeJson(report);
