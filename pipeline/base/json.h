@@ -12,40 +12,41 @@ namespace phraseweld {
 // U+0000..U+001F are escaped.
 inline void AppendJsonText(std::string* out, std::string_view text) {
   static constexpr char kDigits[] = "0123456789abcdef";
-  for (char c : text) {
+  size_t copied = 0;
+  for (size_t i = 0; i < text.size(); ++i) {
+    const char c = text[i];
     const auto byte = static_cast<unsigned char>(c);
+    if (byte >= 0x20 && c != '"' && c != '\\') continue;
+    out->append(text, copied, i - copied);
+    copied = i + 1;
+    *out += '\\';
     switch (c) {
       case '"':
-        *out += "\\\"";
-        break;
       case '\\':
-        *out += "\\\\";
+        *out += c;
         break;
       case '\b':
-        *out += "\\b";
+        *out += 'b';
         break;
       case '\f':
-        *out += "\\f";
+        *out += 'f';
         break;
       case '\n':
-        *out += "\\n";
+        *out += 'n';
         break;
       case '\r':
-        *out += "\\r";
+        *out += 'r';
         break;
       case '\t':
-        *out += "\\t";
+        *out += 't';
         break;
       default:
-        if (byte < 0x20) {
-          *out += "\\u00";
-          *out += kDigits[byte >> 4];
-          *out += kDigits[byte & 15];
-        } else {
-          *out += c;
-        }
+        *out += "u00";
+        *out += kDigits[byte >> 4];
+        *out += kDigits[byte & 15];
     }
   }
+  out->append(text, copied);
 }
 
 inline void AppendJsonString(std::string* out, std::string_view text) {

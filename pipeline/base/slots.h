@@ -53,6 +53,13 @@ class BridgeCodes {
     while (offset_[static_cast<size_t>(length)] > code) --length;
     return length;
   }
+  // The first word of a bridge that is not empty.
+  uint32_t First(uint64_t code) const {
+    const int length = Length(code);
+    uint64_t digits = code - offset_[static_cast<size_t>(length)];
+    for (int i = 1; i < length; ++i) digits /= function_types_;
+    return static_cast<uint32_t>(digits);
+  }
   std::vector<uint32_t> Words(uint64_t code) const {
     int length = Length(code);
     uint64_t digits = code - offset_[static_cast<size_t>(length)];

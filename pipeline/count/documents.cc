@@ -61,7 +61,8 @@ SlotPlaces Combine(const std::vector<PartCounts>& parts, size_t items) {
   return places;
 }
 
-// Runs scan(part counts, begin, end) over the parts of the stream, on all lanes.
+// Runs scan(part counts, chunk, begin, end) over the chunks of the parts of the stream, on all
+// lanes.
 template <typename ScanRange>
 absl::StatusOr<SlotPlaces> CountInParts(Lanes& lanes, const StreamView& stream, size_t items,
                                         ScanRange&& scan) {
@@ -76,7 +77,7 @@ absl::StatusOr<SlotPlaces> CountInParts(Lanes& lanes, const StreamView& stream, 
     auto cut = std::lower_bound(stream.cuts.begin(), stream.cuts.end(), begin);
     uint64_t held = begin;
     for (; *cut < end; ++cut) {
-      scan(&parts[i], *cut, *(cut + 1));
+      scan(&parts[i], static_cast<size_t>(cut - stream.cuts.begin()), *cut, *(cut + 1));
       if (*(cut + 1) - held >= kReleaseEvery) {
         stream.release(held, *(cut + 1));
         held = *(cut + 1);
@@ -99,30 +100,38 @@ void EndDocument(PartCounts* part, uint64_t at) {
 
 absl::StatusOr<SlotPlaces> CountSlotDocuments(Lanes& lanes, const StreamView& stream,
                                               const SlotRules& rules, const SlotIndex& index,
-                                              size_t size) {
-  return CountInParts(lanes, stream, size, [&](PartCounts* part, uint64_t begin, uint64_t end) {
-    ScanListedSlots(
-        stream.entries, begin, end, rules, index,
-        [&](uint32_t place, const Slot&, uint64_t left_at, uint64_t) { part->See(place, left_at); },
-        [&](uint64_t at) { EndDocument(part, at); });
-  });
+                                              size_t size,
+                                              std::vector<std::vector<FoundSlot>>* found) {
+  if (found != nullptr) found->assign(stream.chunks(), {});
+  return CountInParts(
+      lanes, stream, size, [&](PartCounts* part, size_t chunk, uint64_t begin, uint64_t end) {
+        std::vector<FoundSlot>* const list = found == nullptr ? nullptr : &(*found)[chunk];
+        ScanListedSlots(
+            stream.entries, begin, end, rules, index,
+            [&](uint32_t place, const Slot&, uint64_t left_at, uint64_t right_at) {
+              part->See(place, left_at);
+              if (list == nullptr) return;
+              list->push_back({left_at, static_cast<uint32_t>(right_at - left_at), place});
+            },
+            [&](uint64_t at) { EndDocument(part, at); });
+      });
 }
 
 absl::StatusOr<std::vector<uint64_t>> CountTypeDocuments(Lanes& lanes, const StreamView& stream,
                                                          uint32_t word_types, size_t phrases) {
-  PW_ASSIGN_OR_RETURN(
-      SlotPlaces places,
-      CountInParts(lanes, stream, phrases, [&](PartCounts* part, uint64_t begin, uint64_t end) {
-        for (uint64_t at = begin; at < end; ++at) {
-          const Entry entry = stream.entries[at];
-          if (entry == kDocumentEnd) {
-            EndDocument(part, at);
-          } else if (!IsMark(entry)) {
-            const uint32_t type = entry & ~kInside;
-            if (type >= word_types) part->See(type - word_types, at);
-          }
-        }
-      }));
+  PW_ASSIGN_OR_RETURN(SlotPlaces places,
+                      CountInParts(lanes, stream, phrases,
+                                   [&](PartCounts* part, size_t, uint64_t begin, uint64_t end) {
+                                     for (uint64_t at = begin; at < end; ++at) {
+                                       const Entry entry = stream.entries[at];
+                                       if (entry == kDocumentEnd) {
+                                         EndDocument(part, at);
+                                       } else if (!IsMark(entry)) {
+                                         const uint32_t type = entry & ~kInside;
+                                         if (type >= word_types) part->See(type - word_types, at);
+                                       }
+                                     }
+                                   }));
   return std::move(places.documents);
 }
 

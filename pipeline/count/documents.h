@@ -18,10 +18,12 @@ struct SlotPlaces {
 };
 
 // Counts, for the `size` slot types of `index`, the documents that have them, and finds where each
-// first stands. One scan of the stream.
+// first stands. One scan of the stream. Where `found` is given, it becomes all such slots: a list a
+// chunk of the stream, each in the order of the stream.
 absl::StatusOr<SlotPlaces> CountSlotDocuments(Lanes& lanes, const StreamView& stream,
                                               const SlotRules& rules, const SlotIndex& index,
-                                              size_t size);
+                                              size_t size,
+                                              std::vector<std::vector<FoundSlot>>* found = nullptr);
 
 // For each phrase type (id - word_types, `phrases` of them): the documents in which a token of the
 // type was made, whether or not a longer phrase took it in later.

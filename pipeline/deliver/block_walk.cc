@@ -15,6 +15,15 @@ absl::Status Changed() {
       "reading); run again when the inputs are still");
 }
 
+std::string_view WordOf(const WalkPiece& piece, size_t i) {
+  return piece.text.substr(piece.words[i].begin, piece.words[i].end - piece.words[i].begin);
+}
+
+std::string_view GapBefore(const WalkPiece& piece, size_t i) {
+  const uint32_t begin = piece.words[i - 1].end;
+  return piece.text.substr(begin, piece.words[i].begin - begin);
+}
+
 }  // namespace
 
 std::string_view SurfaceGap(std::string_view gap) {
@@ -51,41 +60,32 @@ absl::Status BlockWalk::Piece(const WalkPiece& piece) {
     output_->spans.push_back(
         {"", piece.document, piece.field, piece.begins_passage, piece.ends_passage});
   }
-  uint32_t previous_end = 0;
   for (size_t i = 0; i < piece.words.size(); ++i) {
-    const WordSpan word = piece.words[i];
     while (at_ < end_ && stream_[at_] == kBreak) ++at_;
     if (at_ >= end_ || IsMark(stream_[at_])) return Changed();
     const Entry entry = stream_[at_];
     if (IsToken(entry)) {
-      if (in_token_) EndToken(piece, false);
-      BeginToken(entry, at_, piece, word);
+      if (in_token_) EndToken(piece, i - 1, false);
+      BeginToken(entry, at_, piece, i);
     } else if (i == 0) {
       if (piece.begins_passage) return Changed();
-      BeginToken(entry, at_, piece, word);
+      BeginToken(entry, at_, piece, i);
     } else {
-      const std::string_view gap = piece.text.substr(previous_end, word.begin - previous_end);
-      Join(piece, previous_end, word.begin);
-      spelling_ += SurfaceGap(gap);
-    }
-    if (in_token_) {
-      spelling_ += piece.text.substr(word.begin, word.end - word.begin);
-      token_end_ = word.end;
+      Join(piece, piece.words[i - 1].end, piece.words[i].begin);
+      token_is_plain_ = token_is_plain_ && SurfaceGap(GapBefore(piece, i)) == " " &&
+                        Surfaces::IsPlain(WordOf(piece, i));
     }
     if (options_.wanted != nullptr && wanted_ < options_.wanted->size() &&
         (*options_.wanted)[wanted_] == at_) {
-      Find(piece, word);
+      Find(piece, piece.words[i]);
     }
-    previous_end = word.end;
     ++at_;
   }
   if (in_token_) {
+    const size_t last = piece.words.size() - 1;
     const bool goes_on = !piece.ends_passage && at_ < size_ && IsInside(stream_[at_]);
-    if (goes_on) {
-      Join(piece, previous_end, piece.text.size());
-      spelling_ += SurfaceGap(piece.text.substr(previous_end));
-    }
-    EndToken(piece, goes_on);
+    if (goes_on) Join(piece, piece.words[last].end, piece.text.size());
+    EndToken(piece, last, goes_on);
   }
   while (at_ < end_ && stream_[at_] == kBreak) ++at_;
   if (!piece.ends_passage) return absl::OkStatus();
@@ -104,7 +104,7 @@ absl::Status BlockWalk::Expect(Entry mark) {
   return absl::OkStatus();
 }
 
-void BlockWalk::BeginToken(Entry entry, uint64_t at, const WalkPiece& piece, const WordSpan& word) {
+void BlockWalk::BeginToken(Entry entry, uint64_t at, const WalkPiece& piece, size_t word) {
   token_is_carried_ = IsInside(entry);
   while (IsInside(stream_[at])) --at;
   token_type_ = stream_[at];
@@ -115,32 +115,46 @@ void BlockWalk::BeginToken(Entry entry, uint64_t at, const WalkPiece& piece, con
   }
   in_token_ = options_.types->is_phrase(token_type_);
   if (!in_token_) return;
-  spelling_.clear();
-  token_begin_ = word.begin;
+  token_first_word_ = word;
+  token_is_plain_ = Surfaces::IsPlain(WordOf(piece, word));
   if (options_.spans && !token_is_carried_) {
-    absl::StrAppend(&output_->spans.back().items, "[", piece.text_offset + token_begin_, ",");
+    absl::StrAppend(&output_->spans.back().items, "[", piece.text_offset + piece.words[word].begin,
+                    ",");
   }
 }
 
-void BlockWalk::EndToken(const WalkPiece& piece, bool goes_on) {
+void BlockWalk::EndToken(const WalkPiece& piece, size_t last_word, bool goes_on) {
   in_token_ = false;
   if (options_.spans && !goes_on) {
     std::string& items = output_->spans.back().items;
-    absl::StrAppend(&items, piece.text_offset + token_end_, ",");
+    absl::StrAppend(&items, piece.text_offset + piece.words[last_word].end, ",");
     AppendJsonString(&items, options_.types->Text(token_type_));
     items += "],";
   }
-  if (token_is_carried_) {
-    output_->has_carried_in = true;
-    output_->carried_in = spelling_;
-    output_->carried_in_type = token_type_;
-    output_->carries_on = goes_on;
-  } else if (goes_on) {
-    output_->has_carried_out = true;
-    output_->carried_out = spelling_;
-  } else if (options_.surfaces != nullptr) {
-    options_.surfaces->Count(token_type_, spelling_);
+  if (token_is_carried_ || goes_on) {
+    std::string spelling = Spelling(piece, last_word);
+    if (goes_on) spelling += SurfaceGap(piece.text.substr(piece.words[last_word].end));
+    if (token_is_carried_) {
+      output_->has_carried_in = true;
+      output_->carried_in = std::move(spelling);
+      output_->carried_in_type = token_type_;
+      output_->carries_on = goes_on;
+    } else {
+      output_->has_carried_out = true;
+      output_->carried_out = std::move(spelling);
+    }
+  } else if (options_.surfaces != nullptr && !token_is_plain_) {
+    options_.surfaces->Count(token_type_, Spelling(piece, last_word));
   }
+}
+
+std::string BlockWalk::Spelling(const WalkPiece& piece, size_t last_word) const {
+  std::string spelling;
+  for (size_t i = token_first_word_; i <= last_word; ++i) {
+    if (i > token_first_word_) spelling += SurfaceGap(GapBefore(piece, i));
+    spelling += WordOf(piece, i);
+  }
+  return spelling;
 }
 
 void BlockWalk::Join(const WalkPiece& piece, uint64_t gap_begin, uint64_t gap_end) {
@@ -156,7 +170,8 @@ void BlockWalk::Find(const WalkPiece& piece, const WordSpan& word) {
 
 void BlockWalk::WriteSource() {
   std::vector<BlockOutput::Joint>& joints = output_->joints;
-  // The passages of a JSON object come in the order of the job's fields, whatever their order there.
+  // The passages of a JSON object come in the order of the job's fields, whatever their order
+  // there.
   const auto before = [](const BlockOutput::Joint& a, const BlockOutput::Joint& b) {
     return a.gap_begin < b.gap_begin;
   };

@@ -86,10 +86,9 @@ class BlockWalk {
   absl::Status Finish();
 
  private:
-  struct Token;
-  void BeginToken(Entry type, uint64_t at, const WalkPiece& piece, const WordSpan& word);
-  void EndToken(const WalkPiece& piece, bool goes_on);
-  void AppendGap(std::string_view gap);
+  void BeginToken(Entry type, uint64_t at, const WalkPiece& piece, size_t word);
+  void EndToken(const WalkPiece& piece, size_t last_word, bool goes_on);
+  std::string Spelling(const WalkPiece& piece, size_t last_word) const;
   void WriteSource();
   void Join(const WalkPiece& piece, uint64_t gap_begin, uint64_t gap_end);
   void Find(const WalkPiece& piece, const WordSpan& word);
@@ -106,8 +105,8 @@ class BlockWalk {
   // The phrase token that the walk is inside of.
   bool in_token_ = false, token_is_carried_ = false;
   uint32_t token_type_ = 0;
-  uint32_t token_begin_ = 0, token_end_ = 0;  // in the piece's text
-  std::string spelling_;
+  size_t token_first_word_ = 0;  // of the piece
+  bool token_is_plain_ = false;  // so far
   bool document_has_words_ = false;
 };
 

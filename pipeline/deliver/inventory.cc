@@ -1,6 +1,8 @@
 #include "deliver/inventory.h"
 
 #include <algorithm>
+#include <array>
+#include <optional>
 #include <string>
 
 #include "absl/strings/str_cat.h"
@@ -23,25 +25,26 @@ void AppendDerivation(std::string* out, const Derivation& derivation,
   *out += '}';
 }
 
-}  // namespace
+// The texts of a phrase's scores, each worked out once.
+class ScoreTexts {
+ public:
+  ScoreTexts(const ScoreWriter& scores, const std::optional<SlotTable>& table)
+      : scores_(scores), table_(table) {}
+  // Empty where the phrase has no scores.
+  const std::string& Of(Quantity quantity) {
+    std::string& text = texts_[static_cast<size_t>(quantity)];
+    if (table_ && text.empty()) text = scores_.format(scores_.score(quantity, *table_));
+    return text;
+  }
 
-void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
-  std::sort(phrases->begin(), phrases->end(), [&](const PhraseRecord& a, const PhraseRecord& b) {
-    const uint64_t made_a = a.occurrences + a.inside_longer;
-    const uint64_t made_b = b.occurrences + b.inside_longer;
-    if (made_a != made_b) return made_a > made_b;
-    if (int by_text = a.text.compare(b.text); by_text != 0) return by_text < 0;
-    std::vector<uint32_t> words_a, words_b;
-    types.AppendWords(a.type, &words_a);
-    types.AppendWords(b.type, &words_b);
-    return std::lexicographical_compare(
-        words_a.begin(), words_a.end(), words_b.begin(), words_b.end(),
-        [&](uint32_t x, uint32_t y) { return types.form(x) < types.form(y); });
-  });
-}
+ private:
+  const ScoreWriter& scores_;
+  const std::optional<SlotTable>& table_;
+  std::array<std::string, kQuantities> texts_;
+};
 
-void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& context,
-                         std::string* out) {
+void AppendLine(const PhraseRecord& phrase, const InventoryContext& context, ScoreTexts* scores,
+                std::string* out) {
   *out += '{';
   AppendJsonString(out, "phrase", phrase.text);
   AppendJsonCount(out, "words", static_cast<uint64_t>(phrase.words));
@@ -62,7 +65,7 @@ void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& con
   if (phrase.scored) {
     for (Quantity quantity : context.shown(phrase.scored_pass)) {
       AppendJsonKey(out, QuantityName(quantity));
-      *out += context.scores.format(context.scores.score(quantity, *phrase.scored));
+      *out += scores->Of(quantity);
     }
   }
   *out += '}';
@@ -70,18 +73,39 @@ void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& con
   *out += "}\n";
 }
 
-void AppendInventoryRow(const PhraseRecord& phrase, const InventoryContext& context,
-                        std::string* out) {
+void AppendRow(const PhraseRecord& phrase, ScoreTexts* scores, std::string* out) {
   absl::StrAppend(out, phrase.text, "\t", phrase.words, "\t", phrase.made_of.front().pass, "\t",
                   phrase.occurrences, "\t");
   absl::StrAppend(out, phrase.inside_longer, "\t", phrase.documents, "\t", phrase.surface);
   for (Quantity quantity : {Quantity::kPmi, Quantity::kNpmi, Quantity::kG2}) {
     *out += '\t';
-    if (phrase.scored) {
-      *out += context.scores.format(context.scores.score(quantity, *phrase.scored));
-    }
+    *out += scores->Of(quantity);
   }
   *out += '\n';
+}
+
+}  // namespace
+
+void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
+  std::sort(phrases->begin(), phrases->end(), [&](const PhraseRecord& a, const PhraseRecord& b) {
+    const uint64_t made_a = a.occurrences + a.inside_longer;
+    const uint64_t made_b = b.occurrences + b.inside_longer;
+    if (made_a != made_b) return made_a > made_b;
+    if (int by_text = a.text.compare(b.text); by_text != 0) return by_text < 0;
+    std::vector<uint32_t> words_a, words_b;
+    types.AppendWords(a.type, &words_a);
+    types.AppendWords(b.type, &words_b);
+    return std::lexicographical_compare(
+        words_a.begin(), words_a.end(), words_b.begin(), words_b.end(),
+        [&](uint32_t x, uint32_t y) { return types.form(x) < types.form(y); });
+  });
+}
+
+void AppendInventory(const PhraseRecord& phrase, const InventoryContext& context, std::string* line,
+                     std::string* row) {
+  ScoreTexts scores(context.scores, phrase.scored);
+  AppendLine(phrase, context, &scores, line);
+  AppendRow(phrase, &scores, row);
 }
 
 }  // namespace phraseweld

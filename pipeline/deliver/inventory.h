@@ -22,12 +22,10 @@ struct InventoryContext {
 // byte order, then the forms of its words one by one.
 void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases);
 
-// A line of inventory.jsonl, and a row of inventory.tsv (after the header), with its line feed.
-// Lines do not depend on each other, so they may be made side by side.
-void AppendInventoryLine(const PhraseRecord& phrase, const InventoryContext& context,
-                         std::string* out);
-void AppendInventoryRow(const PhraseRecord& phrase, const InventoryContext& context,
-                        std::string* out);
+// Appends the phrase's line of inventory.jsonl and its row of inventory.tsv (which has a header),
+// each with its line feed. Phrases do not depend on each other, so they may go side by side.
+void AppendInventory(const PhraseRecord& phrase, const InventoryContext& context, std::string* line,
+                     std::string* row);
 
 inline constexpr char kInventoryHeader[] =
     "phrase\twords\tpass\toccurrences\tinside_longer\tdocuments\tsurface\tpmi\tnpmi\tg2\n";

@@ -164,7 +164,8 @@ std::string JointsPath(std::string_view rewritten_path) {
 absl::StatusOr<std::unique_ptr<JointsWriter>> JointsWriter::Create(FileSystem& files,
                                                                    const std::string& path,
                                                                    std::string_view joiner) {
-  PW_ASSIGN_OR_RETURN(std::unique_ptr<OutputStream> out, OutputStream::Create(files, path, true));
+  PW_ASSIGN_OR_RETURN(std::unique_ptr<OutputStream> out,
+                      OutputStream::Create(files, path, true, OnDisk::kWhenCommitted));
   std::unique_ptr<JointsWriter> writer(new JointsWriter(std::move(out)));
   writer->buffer_ = kMagic;
   AppendVarint(&writer->buffer_, joiner.size());

@@ -2,7 +2,6 @@
 #define PHRASEWELD_DELIVER_SURFACES_H_
 
 #include <array>
-#include <atomic>
 #include <cstdint>
 #include <mutex>
 #include <string>
@@ -14,30 +13,32 @@
 
 namespace phraseweld {
 
-// Counts the spellings of phrase tokens. Most tokens are spelt like their type's text, and for
-// those one counter a type is all there is. Thread-safe.
+// Counts the spellings of phrase tokens. Most tokens are spelt like their type's text; those are
+// not counted but are what is left of all its tokens. Thread-safe.
 class Surfaces {
  public:
-  explicit Surfaces(const TypeTable& types);
+  // `tokens`: of each type, in the corpus.
+  Surfaces(const TypeTable& types, const std::vector<uint64_t>& tokens)
+      : types_(types), tokens_(tokens) {}
+
+  // Whether a word is its own form whatever the job's options: ASCII, and neither a capital letter
+  // nor a mark. A token of such words with a blank in every gap is spelt like its text.
+  static bool IsPlain(std::string_view word);
+  // For every token that is not spelt like its text, and at will for others.
   void Count(uint32_t type, std::string_view spelling);
-  // The most frequent spelling (of equals the first in byte order); the type's text where no token
-  // was counted. While no thread counts.
+  // The most frequent spelling (of equals the first in byte order); the type's text where it has no
+  // token. While no thread counts.
   std::string MostFrequent(uint32_t type) const;
-  uint64_t memory() const { return memory_.load(std::memory_order_relaxed); }
 
  private:
   static constexpr size_t kShards = 64;
   struct Shard {
     std::mutex mutex;
-    absl::flat_hash_map<std::string, uint64_t> counts;  // key: the type's 4 bytes, the spelling
-    absl::flat_hash_map<uint32_t, std::vector<std::string>> spellings;
+    absl::flat_hash_map<uint32_t, absl::flat_hash_map<std::string, uint64_t>> spellings;
   };
   const TypeTable& types_;
-  std::string texts_;
-  std::vector<uint64_t> text_begins_;
-  std::vector<std::atomic<uint64_t>> plain_;
+  const std::vector<uint64_t>& tokens_;
   std::array<Shard, kShards> shards_;
-  std::atomic<uint64_t> memory_{0};
 };
 
 }  // namespace phraseweld

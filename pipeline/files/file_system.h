@@ -26,6 +26,7 @@ class WriteFile {
   virtual ~WriteFile() = default;
   virtual absl::Status Append(std::string_view bytes) = 0;
   virtual absl::Status Sync() = 0;   // to the disk; a failed sync is final
+  virtual void BeginSync() = 0;      // lets the disk begin; promises nothing
   virtual absl::Status Close() = 0;  // without a sync; the destructor closes, ignoring errors
 };
 
@@ -56,6 +57,7 @@ class FileSystem {
   virtual absl::Status MakeDirectories(const std::string& path) = 0;
   virtual absl::Status Rename(const std::string& from, const std::string& to) = 0;
   virtual absl::Status RemoveAll(const std::string& path) = 0;  // absent is no error
+  virtual absl::Status SyncFile(const std::string& path) = 0;   // what was written and closed
   virtual absl::Status SyncDirectory(const std::string& path) = 0;
   virtual absl::StatusOr<uint64_t> FreeBytes(const std::string& path) = 0;
   // Names of the regular files below `path`, relative to it, in byte order, "/" between parts.
@@ -86,6 +88,7 @@ class ForwardingFileSystem : public FileSystem {
     return target_.Rename(from, to);
   }
   absl::Status RemoveAll(const std::string& path) override { return target_.RemoveAll(path); }
+  absl::Status SyncFile(const std::string& path) override { return target_.SyncFile(path); }
   absl::Status SyncDirectory(const std::string& path) override {
     return target_.SyncDirectory(path);
   }

@@ -25,8 +25,9 @@ std::string FolderOf(const std::string& path) {
 // Where the stored bytes go: PATH.part, which becomes PATH, or PATH itself.
 class Target {
  public:
-  Target(FileSystem& files, std::string path, bool in_place)
+  Target(FileSystem& files, std::string path, bool in_place, OnDisk on_disk)
       : files_(files),
+        sync_(on_disk == OnDisk::kWhenFinished),
         path_(std::move(path)),
         written_path_(in_place ? path_ : path_ + ".part"),
         named_(in_place) {}
@@ -51,13 +52,14 @@ class Target {
   }
 
   absl::StatusOr<OutputDigest> Finish() {
-    PW_RETURN_IF_ERROR(file_->Sync());
+    if (sync_) PW_RETURN_IF_ERROR(file_->Sync());
+    if (!sync_) file_->BeginSync();
     PW_RETURN_IF_ERROR(file_->Close());
     file_.reset();
     if (!named_) {
       PW_RETURN_IF_ERROR(files_.Rename(written_path_, path_));
       named_ = true;
-      PW_RETURN_IF_ERROR(files_.SyncDirectory(FolderOf(path_)));
+      if (sync_) PW_RETURN_IF_ERROR(files_.SyncDirectory(FolderOf(path_)));
     }
     digest_.hash = hasher_.Value();
     return digest_;
@@ -67,6 +69,7 @@ class Target {
 
  private:
   FileSystem& files_;
+  const bool sync_;
   std::string path_;
   std::string written_path_;
   bool named_;
@@ -180,13 +183,14 @@ class ZstdOutput : public GatheringOutput {
 
 absl::StatusOr<std::unique_ptr<OutputStream>> OutputStream::Create(FileSystem& files,
                                                                    const std::string& path,
-                                                                   bool compress_zstd) {
+                                                                   bool compress_zstd,
+                                                                   OnDisk on_disk) {
   PW_ASSIGN_OR_RETURN(const FileInfo info, files.Stat(path));
   if (info.is_directory) {
     return absl::FailedPreconditionError(
         absl::StrCat("cannot write ", path, ": it is a folder; choose another name"));
   }
-  auto target = std::make_unique<Target>(files, path, info.exists && !info.is_regular);
+  auto target = std::make_unique<Target>(files, path, info.exists && !info.is_regular, on_disk);
   PW_RETURN_IF_ERROR(target->Open());
   if (compress_zstd) return std::make_unique<ZstdOutput>(std::move(target));
   return std::make_unique<PlainOutput>(std::move(target));

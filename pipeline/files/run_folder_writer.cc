@@ -78,6 +78,7 @@ absl::Status RunFolderWriter::Commit() {
   PW_ASSIGN_OR_RETURN(std::vector<std::string> names, files_.ListFiles(building_));
   std::set<std::string> folders = {building_};
   for (const std::string& name : names) {
+    PW_RETURN_IF_ERROR(files_.SyncFile(building_ + "/" + name));
     for (size_t slash = name.find('/'); slash != std::string::npos;
          slash = name.find('/', slash + 1)) {
       folders.insert(building_ + "/" + name.substr(0, slash));

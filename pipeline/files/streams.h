@@ -46,20 +46,23 @@ struct OutputDigest {
   Hash128 hash;
 };
 
+// When a finished file is known to be on the disk: when Finish() returns, or once its folder is
+// committed as a whole (RunFolderWriter), which lets the disk work while the run goes on.
+enum class OnDisk { kWhenFinished, kWhenCommitted };
+
 // Writes a file, through zstd when asked; counts and hashes what is stored. The bytes stored depend
 // on the bytes appended alone, not on how they were cut into calls. They go to `path`.part, which
-// takes the name `path` in Finish() once it is whole and on the disk; a stream destroyed before
-// that removes it. Only where `path` is a device or a pipe are they written to it as they come.
-// After an error every later call returns that error.
+// takes the name `path` in Finish() once it is whole; a stream destroyed before that removes it.
+// Only where `path` is a device or a pipe are they written to it as they come. After an error every
+// later call returns that error.
 class OutputStream {
  public:
-  static absl::StatusOr<std::unique_ptr<OutputStream>> Create(FileSystem& files,
-                                                              const std::string& path,
-                                                              bool compress_zstd);
+  static absl::StatusOr<std::unique_ptr<OutputStream>> Create(
+      FileSystem& files, const std::string& path, bool compress_zstd,
+      OnDisk on_disk = OnDisk::kWhenFinished);
   virtual ~OutputStream() = default;
   virtual absl::Status Append(std::string_view bytes) = 0;
-  // Ends the stream, syncs it to the disk and gives the file its name. Nothing may be appended
-  // after.
+  // Ends the stream and gives the file its name. Nothing may be appended after.
   virtual absl::StatusOr<OutputDigest> Finish() = 0;
 };
 

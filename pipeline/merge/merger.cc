@@ -7,7 +7,6 @@ namespace {
 
 // A slot that was accepted.
 struct Link {
-  Slot slot;
   uint64_t left_at = 0, right_at = 0;
   uint32_t rank = 0;
 };
@@ -31,7 +30,7 @@ class Joiner {
   void Join(const Link& link) {
     const uint32_t phrase = accepted_[link.rank].phrase;
     if (on_change_) {
-      Slot before{0, link.slot.left, 0};
+      Slot before{0, accepted_[link.rank].slot.left, 0};
       uint64_t previous_at = 0;
       const bool has_left = FindLeft(link.left_at, &before, &previous_at);
       const bool beside_last = has_left && has_last_ && previous_at == last_.right_at;
@@ -53,7 +52,7 @@ class Joiner {
     has_last_ = false;
     const NextContent next = FindRight(stream_, last_.right_at, end_, rules_);
     if (!next.has_slot) return;
-    const Slot before{last_.slot.right, stream_[next.at], next.bridge};
+    const Slot before{accepted_[last_.rank].slot.right, stream_[next.at], next.bridge};
     on_change_(before, {accepted_[last_.rank].phrase, before.right, before.bridge});
   }
 
@@ -67,7 +66,7 @@ class Joiner {
     while (!found && at > begin_) {
       const Entry entry = stream_[--at];
       if (has_last_ && at == last_.right_at) {
-        slot->left = last_.slot.right;
+        slot->left = accepted_[last_.rank].slot.right;
         found = true;
       } else if (IsMark(entry)) {
         return false;
@@ -102,6 +101,55 @@ class Joiner {
   bool has_last_ = false;
 };
 
+// Decides, slot by slot from left to right, which accepted slots of a stretch are merged.
+class Chains {
+ public:
+  Chains(const Joiner& joiner, std::vector<uint64_t>* joined) : joiner_(joiner), joined_(*joined) {}
+
+  void Add(const Link& link) {
+    const bool chained = has_previous_ && previous_.right_at == link.left_at;
+    if (!descent_.empty() && chained && link.rank < previous_.rank) {
+      descent_.push_back(link);
+    } else {
+      // Of a descent that ends here the last link is taken, and a link that shares a token with it
+      // is dropped.
+      const bool beside_taken = chained && !descent_.empty();
+      Decide();
+      if (!beside_taken) descent_.push_back(link);
+    }
+    previous_ = link;
+    has_previous_ = true;
+  }
+
+  void End() {
+    Decide();
+    joiner_.EndLast();
+  }
+
+ private:
+  void Decide() {
+    // The last of a descent is better than both its neighbours: it is taken, the one before it
+    // drops out, the one before that is free again, and so on.
+    taken_.clear();
+    for (size_t i = descent_.size(); i > 0; i = i > 2 ? i - 2 : 0) {
+      taken_.push_back(descent_[i - 1]);
+    }
+    for (size_t i = taken_.size(); i > 0; --i) {
+      ++joined_[taken_[i - 1].rank];
+      joiner_.Join(taken_[i - 1]);
+    }
+    descent_.clear();
+  }
+
+  Joiner joiner_;
+  std::vector<uint64_t>& joined_;
+  // A chain's links of which nothing is decided yet: a descent to ever better ranks.
+  std::vector<Link> descent_;
+  std::vector<Link> taken_;
+  Link previous_;
+  bool has_previous_ = false;
+};
+
 }  // namespace
 
 void JoinToken(Entry* stream, uint64_t left_at, uint64_t right_at, uint32_t phrase,
@@ -119,43 +167,26 @@ void JoinToken(Entry* stream, uint64_t left_at, uint64_t right_at, uint32_t phra
 
 void Merger::Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
                    const OnSlotChange& on_change) const {
-  Joiner joiner(stream, begin, end, rules_, accepted_, word_types_, on_change);
-  // A chain's links of which nothing is decided yet: a descent to ever better ranks.
-  std::vector<Link> descent;
-  std::vector<Link> taken;
-  Link previous;
-  bool has_previous = false;
-  const auto decide = [&] {
-    // The last of a descent is better than both its neighbours: it is taken, the one before it
-    // drops out, the one before that is free again, and so on.
-    taken.clear();
-    for (size_t i = descent.size(); i > 0; i = i > 2 ? i - 2 : 0) taken.push_back(descent[i - 1]);
-    for (size_t i = taken.size(); i > 0; --i) {
-      ++(*joined)[taken[i - 1].rank];
-      joiner.Join(taken[i - 1]);
-    }
-    descent.clear();
-  };
+  Chains chains(Joiner(stream, begin, end, rules_, accepted_, word_types_, on_change), joined);
   ScanListedSlots(
       stream, begin, end, rules_, index_,
-      [&](uint32_t rank, const Slot& slot, uint64_t left_at, uint64_t right_at) {
-        const Link link{slot, left_at, right_at, rank};
-        const bool chained = has_previous && previous.right_at == left_at;
-        if (!descent.empty() && chained && rank < previous.rank) {
-          descent.push_back(link);
-        } else {
-          // Of a descent that ends here the last link is taken, and a link that shares a token with
-          // it is dropped.
-          const bool beside_taken = chained && !descent.empty();
-          decide();
-          if (!beside_taken) descent.push_back(link);
-        }
-        previous = link;
-        has_previous = true;
+      [&](uint32_t rank, const Slot&, uint64_t left_at, uint64_t right_at) {
+        chains.Add({left_at, right_at, rank});
       },
       [](uint64_t) {});
-  decide();
-  joiner.EndLast();
+  chains.End();
+}
+
+void Merger::MergeFound(Entry* stream, uint64_t begin, uint64_t end,
+                        const std::vector<FoundSlot>& found, const std::vector<uint32_t>& ranks,
+                        std::vector<uint64_t>* joined, const OnSlotChange& on_change) const {
+  Chains chains(Joiner(stream, begin, end, rules_, accepted_, word_types_, on_change), joined);
+  for (const FoundSlot& slot : found) {
+    const uint32_t rank = ranks[slot.place];
+    if (rank == SlotIndex::kAbsent) continue;
+    chains.Add({slot.left_at, slot.left_at + slot.reach, rank});
+  }
+  chains.End();
 }
 
 }  // namespace phraseweld

@@ -42,6 +42,12 @@ class Merger {
   void Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
              const OnSlotChange& on_change) const;
 
+  // The same without a scan: `found` holds, in order, every slot of the stretch that was accepted,
+  // and may hold others. `ranks` gives the rank of a place; SlotIndex::kAbsent is an other.
+  void MergeFound(Entry* stream, uint64_t begin, uint64_t end, const std::vector<FoundSlot>& found,
+                  const std::vector<uint32_t>& ranks, std::vector<uint64_t>* joined,
+                  const OnSlotChange& on_change) const;
+
  private:
   const SlotRules& rules_;
   const std::vector<AcceptedSlot>& accepted_;

@@ -103,7 +103,8 @@ class CorpusWriter {
 
   absl::Status Begin() {
     if (!job_.deliver.spans) return absl::OkStatus();
-    PW_ASSIGN_OR_RETURN(spans_, OutputStream::Create(files_, folder_ + "/spans.jsonl", false));
+    PW_ASSIGN_OR_RETURN(spans_, OutputStream::Create(files_, folder_ + "/spans.jsonl", false,
+                                                     OnDisk::kWhenCommitted));
     return absl::OkStatus();
   }
 
@@ -151,8 +152,9 @@ class CorpusWriter {
     if (job_.deliver.corpus == CorpusForm::kNone) return absl::OkStatus();
     const std::string path = folder_ + "/" + CorpusPath(file);
     PW_RETURN_IF_ERROR(files_.MakeDirectories(path.substr(0, path.rfind('/'))));
-    PW_ASSIGN_OR_RETURN(
-        out_, OutputStream::Create(files_, path, job_.deliver.compress == Compress::kZstd));
+    PW_ASSIGN_OR_RETURN(out_,
+                        OutputStream::Create(files_, path, job_.deliver.compress == Compress::kZstd,
+                                             OnDisk::kWhenCommitted));
     if (job_.deliver.corpus == CorpusForm::kSource) {
       PW_ASSIGN_OR_RETURN(joints_, JointsWriter::Create(files_, JointsPath(path), source_joiner_));
     }
@@ -254,7 +256,7 @@ absl::Status DeliverCorpus(const Job& job, const std::vector<InputFile>& inputs,
                            Delivery* delivery, std::vector<DeliveredFile>* written) {
   delivery->wanted = WantedPositions(results);
   delivery->places.resize(delivery->wanted.size());
-  delivery->surfaces = std::make_unique<Surfaces>(results.types);
+  delivery->surfaces = std::make_unique<Surfaces>(results.types, results.frequency);
   WalkOptions options;
   options.source = job.deliver.corpus == CorpusForm::kSource;
   options.words = job.deliver.corpus == CorpusForm::kWords;

@@ -51,6 +51,7 @@ class PassLoop {
   absl::StatusOr<std::unique_ptr<SlotCounter>> NewCounter(const char* purpose);
   absl::StatusOr<Choice> Choose(const PassOptions& options, uint64_t tokens);
   absl::Status FillDocuments(std::vector<Candidate>* pending);
+  std::vector<uint32_t> RanksOfPlaces(const SlotIndex& accepted) const;
   absl::Status MergeAccepted(PassRecord* record, bool count_changes);
   absl::Status PhrasesFitMemory(size_t accepted);
   void Adjust(uint32_t type, uint64_t more, uint64_t less);
@@ -64,7 +65,7 @@ class PassLoop {
   absl::Status ForChunks(Work&& work) {
     return lanes_.ForEach(corpus_.stream.chunks(), [&](int lane, size_t i) {
       const uint64_t begin = corpus_.stream.cuts[i], end = corpus_.stream.cuts[i + 1];
-      work(lane, begin, end);
+      work(lane, i, begin, end);
       corpus_.stream.release(begin, end);
       observer_.advance(done_.fetch_add(end - begin) + end - begin);
       return absl::OkStatus();
@@ -85,6 +86,10 @@ class PassLoop {
   SlotRules slot_rules_;
   PhraseRules phrase_rules_;
   std::unique_ptr<SlotCounter> counter_;
+  // Where the slots of the candidates stand, a list a chunk of the stream, and the candidates of
+  // the places; the lists are empty where they would take too much memory.
+  std::vector<std::vector<FoundSlot>> found_;
+  std::vector<Slot> found_places_;
   uint64_t tokens_ = 0, types_ = 0;
   uint64_t phrase_bytes_ = 0;
   int number_ = 0;
@@ -180,7 +185,7 @@ absl::Status PassLoop::JoinRulings() {
   std::vector<std::vector<uint64_t>> joined(static_cast<size_t>(lanes_.lanes()),
                                             std::vector<uint64_t>(phrases.size(), 0));
   const RulingJoiner joiner(phrases, slot_rules_.barriers, results_.types.word_types());
-  PW_RETURN_IF_ERROR(ForChunks([&](int lane, uint64_t begin, uint64_t end) {
+  PW_RETURN_IF_ERROR(ForChunks([&](int lane, size_t, uint64_t begin, uint64_t end) {
     joiner.Join(corpus_.stream.entries, begin, end, &joined[static_cast<size_t>(lane)]);
   }));
   PW_ASSIGN_OR_RETURN(
@@ -228,7 +233,7 @@ absl::StatusOr<std::unique_ptr<SlotCounter>> PassLoop::NewCounter(const char* pu
 }
 
 absl::Status PassLoop::CountAll(SlotCounter* counter) {
-  PW_RETURN_IF_ERROR(ForChunks([&](int lane, uint64_t begin, uint64_t end) {
+  PW_RETURN_IF_ERROR(ForChunks([&](int lane, size_t, uint64_t begin, uint64_t end) {
     counter->AddAll(lane, corpus_.stream.entries, begin, end);
   }));
   return counter->Update(lanes_, results_.types.size());
@@ -236,10 +241,19 @@ absl::Status PassLoop::CountAll(SlotCounter* counter) {
 
 absl::Status PassLoop::FillDocuments(std::vector<Candidate>* pending) {
   if (pending->empty()) return absl::OkStatus();
-  const SlotIndex index(pending->size(), results_.types.size(),
+  const SlotIndex index(pending->size(), results_.types.size(), slot_rules_.codes,
                         [&](size_t i) -> const Slot& { return (*pending)[i].slot; });
-  PW_ASSIGN_OR_RETURN(SlotPlaces places, CountSlotDocuments(lanes_, corpus_.stream, slot_rules_,
-                                                            index, pending->size()));
+  found_places_.clear();
+  uint64_t slots = 0;
+  for (const Candidate& candidate : *pending) {
+    found_places_.push_back(candidate.slot);
+    slots += candidate.table.n;
+  }
+  found_.clear();
+  const bool keep = !plan_.on_disk || slots * sizeof(FoundSlot) <= plan_.working_bytes / 4;
+  PW_ASSIGN_OR_RETURN(SlotPlaces places,
+                      CountSlotDocuments(lanes_, corpus_.stream, slot_rules_, index,
+                                         pending->size(), keep ? &found_ : nullptr));
   for (size_t i = 0; i < pending->size(); ++i) {
     (*pending)[i].table.documents = places.documents[i];
     (*pending)[i].first = places.first[i];
@@ -266,6 +280,13 @@ absl::StatusOr<Choice> PassLoop::Choose(const PassOptions& options, uint64_t tok
   }
 }
 
+std::vector<uint32_t> PassLoop::RanksOfPlaces(const SlotIndex& accepted) const {
+  std::vector<uint32_t> ranks;
+  ranks.reserve(found_places_.size());
+  for (const Slot& slot : found_places_) ranks.push_back(accepted.Find(slot));
+  return ranks;
+}
+
 absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
   BeginStage("merge");
   std::vector<AcceptedSlot> accepted;
@@ -280,19 +301,27 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
                      " makes more phrases than a run can tell apart; a higher "
                      "gate or a `take` keeps them fewer"));
   }
-  const SlotIndex index(accepted.size(), results_.types.size(),
+  const SlotIndex index(accepted.size(), results_.types.size(), slot_rules_.codes,
                         [&](size_t i) -> const Slot& { return accepted[i].slot; });
   const Merger merger(slot_rules_, accepted, index, results_.types.word_types());
   std::vector<std::vector<uint64_t>> joined(static_cast<size_t>(lanes_.lanes()),
                                             std::vector<uint64_t>(accepted.size(), 0));
-  PW_RETURN_IF_ERROR(ForChunks([&](int lane, uint64_t begin, uint64_t end) {
+  const std::vector<uint32_t> ranks = RanksOfPlaces(index);
+  PW_RETURN_IF_ERROR(ForChunks([&](int lane, size_t chunk, uint64_t begin, uint64_t end) {
     OnSlotChange on_change;
     if (count_changes) {
       on_change = [&](const Slot& before, const Slot& after) {
         counter_->Change(lane, before, after);
       };
     }
-    merger.Merge(corpus_.stream.entries, begin, end, &joined[static_cast<size_t>(lane)], on_change);
+    std::vector<uint64_t>* const counts = &joined[static_cast<size_t>(lane)];
+    Entry* const entries = corpus_.stream.entries;
+    if (found_.empty()) {
+      merger.Merge(entries, begin, end, counts, on_change);
+    } else {
+      merger.MergeFound(entries, begin, end, found_[chunk], ranks, counts, on_change);
+      std::vector<FoundSlot>().swap(found_[chunk]);
+    }
   }));
   results_.made.resize(results_.types.size() - results_.types.word_types(), 0);
   for (size_t rank = 0; rank < accepted.size(); ++rank) {

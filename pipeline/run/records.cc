@@ -11,38 +11,61 @@
 namespace phraseweld {
 namespace {
 
-// Writes one file through `write`, which gets the function to append with.
-template <typename Write>
-absl::Status WriteFileWith(const std::string& folder, const std::string& path, FileSystem& files,
-                           std::vector<DeliveredFile>* written, Write&& write) {
-  PW_ASSIGN_OR_RETURN(std::unique_ptr<OutputStream> out,
-                      OutputStream::Create(files, folder + "/" + path, false));
-  PW_RETURN_IF_ERROR(write([&](std::string_view bytes) { return out->Append(bytes); }));
-  PW_ASSIGN_OR_RETURN(OutputDigest digest, out->Finish());
-  written->push_back({path, digest});
-  return absl::OkStatus();
-}
+// A file of the run folder.
+class RecordFile {
+ public:
+  static absl::StatusOr<RecordFile> Create(const std::string& folder, const std::string& path,
+                                           FileSystem& files) {
+    RecordFile file;
+    file.path_ = path;
+    PW_ASSIGN_OR_RETURN(
+        file.out_, OutputStream::Create(files, folder + "/" + path, false, OnDisk::kWhenCommitted));
+    return file;
+  }
+  absl::Status Append(std::string_view bytes) { return out_->Append(bytes); }
+  absl::Status Finish(std::vector<DeliveredFile>* written) {
+    PW_ASSIGN_OR_RETURN(OutputDigest digest, out_->Finish());
+    written->push_back({path_, digest});
+    return absl::OkStatus();
+  }
+
+ private:
+  std::string path_;
+  std::unique_ptr<OutputStream> out_;
+};
 
 constexpr size_t kLinesAtOnce = 512;  // a slice that one lane makes
-constexpr size_t kSlicesAtOnce = 64;  // so that what waits to be written stays small
 
-// Makes `count` lines side by side and appends them in order.
-template <typename MakeLine, typename Append>
-absl::Status AppendLines(ThreadLanes& lanes, size_t count, MakeLine&& make_line, Append&& append) {
-  std::vector<std::string> slices(kSlicesAtOnce);
-  for (size_t base = 0; base < count; base += kLinesAtOnce * kSlicesAtOnce) {
-    const size_t end = std::min(count, base + kLinesAtOnce * kSlicesAtOnce);
-    const size_t used = (end - base + kLinesAtOnce - 1) / kLinesAtOnce;
-    PW_RETURN_IF_ERROR(lanes.ForEach(used, [&](int, size_t slice) {
-      std::string& out = slices[slice];
-      out.clear();
-      const size_t from = base + slice * kLinesAtOnce;
-      for (size_t i = from; i < std::min(end, from + kLinesAtOnce); ++i) make_line(i, &out);
-      return absl::OkStatus();
-    }));
-    for (size_t slice = 0; slice < used; ++slice) PW_RETURN_IF_ERROR(append(slices[slice]));
-  }
-  return absl::OkStatus();
+// Makes `count` lines side by side, in `files.size()` files at once, and appends them in order.
+// make(i, texts) appends line i of each file to its text.
+template <typename Make>
+absl::Status AppendLines(ThreadLanes& lanes, size_t count, const std::vector<RecordFile*>& files,
+                         Make&& make) {
+  struct Slice {
+    size_t begin = 0;
+    std::vector<std::string> texts;
+  };
+  size_t next = 0;
+  ThreadLanes::Steps<Slice> steps;
+  steps.make = [&](Slice* slice) {
+    slice->begin = next;
+    next += kLinesAtOnce;
+    return slice->begin < count;
+  };
+  steps.work = [&](int, Slice* slice) {
+    slice->texts.resize(files.size());
+    for (std::string& text : slice->texts) text.clear();
+    const size_t end = std::min(count, slice->begin + kLinesAtOnce);
+    for (size_t i = slice->begin; i < end; ++i) make(i, &slice->texts);
+    return absl::OkStatus();
+  };
+  steps.place = [&](Slice* slice) -> absl::Status {
+    for (size_t i = 0; i < files.size(); ++i) {
+      PW_RETURN_IF_ERROR(files[i]->Append(slice->texts[i]));
+    }
+    return absl::OkStatus();
+  };
+  return lanes.Pipeline(4 * static_cast<size_t>(lanes.lanes()), steps);
 }
 
 absl::StatusOr<std::vector<PhraseRecord>> Inventory(ThreadLanes& lanes, const PassResults& results,
@@ -110,21 +133,18 @@ absl::StatusOr<std::vector<PhraseRecord>> DeliverRecords(
   PW_RETURN_IF_ERROR(files.MakeDirectories(folder + "/audit"));
   for (const PassRecord& pass : results.passes) {
     by_number[pass.number] = &pass;
-    PW_RETURN_IF_ERROR(
-        WriteFileWith(folder, "audit/" + PassLogName(pass.number), files, written,
-                      [&](const auto& append) -> absl::Status {
-                        PW_RETURN_IF_ERROR(append(PassLogHead(pass, log)));
-                        const std::vector<Quantity> shown = ShownMeasures(pass.options);
-                        for (const auto* list : {&pass.accepted, &pass.near_misses}) {
-                          PW_RETURN_IF_ERROR(AppendLines(
-                              lanes, list->size(),
-                              [&](size_t i, std::string* out) {
-                                AppendSlotLine((*list)[i], i + 1, shown, log, out);
-                              },
-                              append));
-                        }
-                        return append(PassLogTail(pass));
-                      }));
+    PW_ASSIGN_OR_RETURN(RecordFile file,
+                        RecordFile::Create(folder, "audit/" + PassLogName(pass.number), files));
+    PW_RETURN_IF_ERROR(file.Append(PassLogHead(pass, log)));
+    const std::vector<Quantity> shown = ShownMeasures(pass.options);
+    for (const auto* list : {&pass.accepted, &pass.near_misses}) {
+      PW_RETURN_IF_ERROR(
+          AppendLines(lanes, list->size(), {&file}, [&](size_t i, std::vector<std::string>* texts) {
+            AppendSlotLine((*list)[i], i + 1, shown, log, &texts->front());
+          }));
+    }
+    PW_RETURN_IF_ERROR(file.Append(PassLogTail(pass)));
+    PW_RETURN_IF_ERROR(file.Finish(written));
   }
   PW_ASSIGN_OR_RETURN(
       std::vector<uint64_t> documents,
@@ -136,21 +156,15 @@ absl::StatusOr<std::vector<PhraseRecord>> DeliverRecords(
   context.codes = &results.codes;
   context.scores = scores;
   context.shown = [&](int pass) { return ShownMeasures(by_number.at(pass)->options); };
-  PW_RETURN_IF_ERROR(
-      WriteFileWith(folder, "inventory.jsonl", files, written, [&](const auto& append) {
-        return AppendLines(
-            lanes, phrases.size(),
-            [&](size_t i, std::string* out) { AppendInventoryLine(phrases[i], context, out); },
-            append);
+  PW_ASSIGN_OR_RETURN(RecordFile lines, RecordFile::Create(folder, "inventory.jsonl", files));
+  PW_ASSIGN_OR_RETURN(RecordFile rows, RecordFile::Create(folder, "inventory.tsv", files));
+  PW_RETURN_IF_ERROR(rows.Append(kInventoryHeader));
+  PW_RETURN_IF_ERROR(AppendLines(
+      lanes, phrases.size(), {&lines, &rows}, [&](size_t i, std::vector<std::string>* texts) {
+        AppendInventory(phrases[i], context, &texts->front(), &texts->back());
       }));
-  PW_RETURN_IF_ERROR(WriteFileWith(
-      folder, "inventory.tsv", files, written, [&](const auto& append) -> absl::Status {
-        PW_RETURN_IF_ERROR(append(kInventoryHeader));
-        return AppendLines(
-            lanes, phrases.size(),
-            [&](size_t i, std::string* out) { AppendInventoryRow(phrases[i], context, out); },
-            append);
-      }));
+  PW_RETURN_IF_ERROR(lines.Finish(written));
+  PW_RETURN_IF_ERROR(rows.Finish(written));
   return phrases;
 }
 

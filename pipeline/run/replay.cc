@@ -198,7 +198,7 @@ ReplayedPass Replayer::CarryOut(const RunPass& pass, Margins margins,
     accepted.push_back({*slot, phrase});
   }
   for (const AcceptedSlot& slot : accepted) Name(slot.phrase);
-  const SlotIndex index(accepted.size(), types_.size(),
+  const SlotIndex index(accepted.size(), types_.size(), rules_.codes,
                         [&](size_t i) -> const Slot& { return accepted[i].slot; });
   std::vector<uint32_t> right_types;
   for (const Seen& slot : seen) right_types.push_back(entries_[slot.right_at]);

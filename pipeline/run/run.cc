@@ -38,8 +38,9 @@ absl::StatusOr<std::vector<InputFile>> KeepStandardInput(std::vector<InputFile> 
 
 absl::StatusOr<DeliveredFile> DeliverText(const std::string& folder, const std::string& path,
                                           std::string_view text, FileSystem& files) {
-  PW_ASSIGN_OR_RETURN(std::unique_ptr<OutputStream> out,
-                      OutputStream::Create(files, folder + "/" + path, false));
+  PW_ASSIGN_OR_RETURN(
+      std::unique_ptr<OutputStream> out,
+      OutputStream::Create(files, folder + "/" + path, false, OnDisk::kWhenCommitted));
   PW_RETURN_IF_ERROR(out->Append(text));
   PW_ASSIGN_OR_RETURN(OutputDigest digest, out->Finish());
   return DeliveredFile{path, digest};

@@ -218,7 +218,7 @@ SlotTable SourceRecount::WithMargins(const Slot& slot, SlotTable table) const {
 
 absl::Status SourceRecount::FillDocuments(std::vector<RecountedSlot>* slots) {
   if (slots->empty()) return absl::OkStatus();
-  const SlotIndex index(slots->size(), results_.types.size(),
+  const SlotIndex index(slots->size(), results_.types.size(), rules_.codes,
                         [&](size_t i) -> const Slot& { return (*slots)[i].slot; });
   PW_ASSIGN_OR_RETURN(const SlotPlaces places,
                       CountSlotDocuments(lanes_, corpus_->stream, rules_, index, slots->size()));
@@ -262,7 +262,7 @@ absl::StatusOr<std::vector<std::optional<SlotTable>>> SourceRecount::Tables(
     const std::vector<Slot>& slots) {
   std::vector<std::optional<SlotTable>> tables(slots.size());
   if (slots.empty()) return tables;
-  const SlotIndex index(slots.size(), results_.types.size(),
+  const SlotIndex index(slots.size(), results_.types.size(), rules_.codes,
                         [&](size_t i) -> const Slot& { return slots[i]; });
   // Each slot type is visited once, so no two lanes write to one place.
   PW_RETURN_IF_ERROR(counter_->Visit(lanes_, 1, [&](int, const Slot& slot, const SlotTable& table) {

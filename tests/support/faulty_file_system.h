@@ -51,6 +51,10 @@ class FaultyFileSystem : public ForwardingFileSystem {
     PW_RETURN_IF_ERROR(Count("rename " + from));
     return target_.Rename(from, to);
   }
+  absl::Status SyncFile(const std::string& path) override {
+    PW_RETURN_IF_ERROR(Count("sync " + path));
+    return target_.SyncFile(path);
+  }
   absl::Status SyncDirectory(const std::string& path) override {
     PW_RETURN_IF_ERROR(Count("sync folder " + path));
     return target_.SyncDirectory(path);
@@ -83,6 +87,7 @@ class FaultyFileSystem : public ForwardingFileSystem {
       PW_RETURN_IF_ERROR(faults_.Count("sync"));
       return file_->Sync();
     }
+    void BeginSync() override { file_->BeginSync(); }
     absl::Status Close() override {
       PW_RETURN_IF_ERROR(faults_.Count("close"));
       return file_->Close();
