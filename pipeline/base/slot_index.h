@@ -8,6 +8,7 @@
 
 #include "absl/types/span.h"
 #include "base/hash.h"
+#include "base/huge_pages.h"
 #include "base/slots.h"
 
 namespace phraseweld {
@@ -78,11 +79,11 @@ class SlotIndex {
   }
   void SetRole(uint32_t type, uint32_t role) { roles_[type >> 4] |= role << (2 * (type & 15)); }
 
-  std::vector<uint32_t> roles_;  // two bits a type
-  const uint32_t inside_;        // stands for entries inside tokens; the next one for marks
-  std::vector<uint64_t> filter_;
+  HugeVector<uint32_t> roles_;  // two bits a type
+  const uint32_t inside_;       // stands for entries inside tokens; the next one for marks
+  HugeVector<uint64_t> filter_;
   uint64_t filter_mask_ = 0;
-  std::vector<Cell> cells_;
+  HugeVector<Cell> cells_;
   size_t mask_ = 0;
 };
 

@@ -1,7 +1,9 @@
 #include "count/documents.h"
 
+#include <algorithm>
 #include <utility>
 
+#include "base/huge_pages.h"
 #include "base/status.h"
 
 namespace phraseweld {
@@ -29,7 +31,7 @@ struct PartCounts {
     ++item.documents;
   }
 
-  std::vector<Item> items;
+  HugeVector<Item> items;
   uint32_t document = 1;          // the current one, in the end the last
   uint64_t first_end = kNowhere;  // where the part's first document ends
   bool ends_inside = false;
@@ -66,8 +68,13 @@ SlotPlaces Combine(const std::vector<PartCounts>& parts, size_t items) {
 template <typename ScanRange>
 absl::StatusOr<SlotPlaces> CountInParts(Lanes& lanes, const StreamView& stream, size_t items,
                                         ScanRange&& scan) {
+  // Parts are not equally hard, so that more of them share the work better; their counts take room.
+  constexpr size_t kCountBytes = size_t{8} << 20;
+  const auto lane_count = static_cast<size_t>(lanes.lanes());
+  const size_t part_bytes = lane_count * items * sizeof(PartCounts::Item);
+  const size_t parts_a_lane = std::clamp<size_t>(kCountBytes / (part_bytes + 1), 1, 4);
   std::vector<std::pair<uint64_t, uint64_t>> ranges;
-  for (const auto& range : stream.Parts(static_cast<size_t>(lanes.lanes()))) {
+  for (const auto& range : stream.Parts(lane_count * parts_a_lane)) {
     if (range.first < range.second) ranges.push_back(range);
   }
   std::vector<PartCounts> parts(ranges.size(), PartCounts(items));

@@ -87,10 +87,26 @@ void AppendRow(const PhraseRecord& phrase, ScoreTexts* scores, std::string* out)
 }  // namespace
 
 void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
-  std::sort(phrases->begin(), phrases->end(), [&](const PhraseRecord& a, const PhraseRecord& b) {
-    const uint64_t made_a = a.occurrences + a.inside_longer;
-    const uint64_t made_b = b.occurrences + b.inside_longer;
-    if (made_a != made_b) return made_a > made_b;
+  // Most pairs are told apart by what lies side by side here.
+  struct Key {
+    uint64_t made = 0;
+    uint64_t text = 0;  // its first eight bytes, as they compare
+    uint32_t phrase = 0;
+  };
+  std::vector<Key> keys;
+  keys.reserve(phrases->size());
+  for (const PhraseRecord& phrase : *phrases) {
+    uint64_t text = 0;
+    for (size_t i = 0; i < 8; ++i) {
+      text = text << 8 | (i < phrase.text.size() ? static_cast<unsigned char>(phrase.text[i]) : 0u);
+    }
+    keys.push_back(
+        {phrase.occurrences + phrase.inside_longer, text, static_cast<uint32_t>(keys.size())});
+  }
+  std::sort(keys.begin(), keys.end(), [&](const Key& key_a, const Key& key_b) {
+    if (key_a.made != key_b.made) return key_a.made > key_b.made;
+    if (key_a.text != key_b.text) return key_a.text < key_b.text;
+    const PhraseRecord &a = (*phrases)[key_a.phrase], &b = (*phrases)[key_b.phrase];
     if (int by_text = a.text.compare(b.text); by_text != 0) return by_text < 0;
     std::vector<uint32_t> words_a, words_b;
     types.AppendWords(a.type, &words_a);
@@ -99,6 +115,10 @@ void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
         words_a.begin(), words_a.end(), words_b.begin(), words_b.end(),
         [&](uint32_t x, uint32_t y) { return types.form(x) < types.form(y); });
   });
+  std::vector<PhraseRecord> sorted;
+  sorted.reserve(keys.size());
+  for (const Key& key : keys) sorted.push_back(std::move((*phrases)[key.phrase]));
+  *phrases = std::move(sorted);
 }
 
 void AppendInventory(const PhraseRecord& phrase, const InventoryContext& context, std::string* line,

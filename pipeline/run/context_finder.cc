@@ -287,7 +287,7 @@ absl::Status Finder::Finish(const std::vector<std::string>& function_words, Find
   EndOpenRun();
   std::vector<Entry>& entries = runs_->entries;
   if (!entries.empty()) entries.push_back(kDocumentEnd);
-  PW_ASSIGN_OR_RETURN(const std::vector<uint32_t> final_ids,
+  PW_ASSIGN_OR_RETURN(const HugeVector<uint32_t> final_ids,
                       runs_->vocabulary.Finish(function_words));
   for (Entry& entry : entries) entry = IsMark(entry) ? entry : final_ids[entry];
   findings->runs = std::move(runs_);

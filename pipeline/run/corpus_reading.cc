@@ -46,7 +46,7 @@ void EncodeBlock(const Block& block, Encoder* encoder, std::vector<Entry>* entri
 }
 
 // Turns provisional ids into final ones and counts the tokens of each type.
-absl::Status Renumber(const std::vector<uint32_t>& final_ids, uint64_t chunk, ThreadLanes& lanes,
+absl::Status Renumber(const HugeVector<uint32_t>& final_ids, uint64_t chunk, ThreadLanes& lanes,
                       EncodedCorpus* corpus) {
   const uint64_t size = corpus->entries->size();
   const size_t types = corpus->vocabulary.size();
@@ -144,7 +144,7 @@ absl::Status EncodeCorpus(const Job& job, const std::vector<InputFile>& inputs,
   corpus->digests = source.digests();
   PW_RETURN_IF_ERROR(corpus->entries->Seal(entries));
   PW_RETURN_IF_ERROR(FitsMemory(job, corpus->vocabulary, lanes.lanes()));
-  PW_ASSIGN_OR_RETURN(std::vector<uint32_t> final_ids, corpus->vocabulary.Finish(reserved));
+  PW_ASSIGN_OR_RETURN(HugeVector<uint32_t> final_ids, corpus->vocabulary.Finish(reserved));
   PW_RETURN_IF_ERROR(Renumber(final_ids, plan.chunk_entries, lanes, corpus));
   corpus->stream.entries = corpus->entries->data();
   corpus->stream.size = entries;

@@ -250,7 +250,7 @@ absl::Status PassLoop::FillDocuments(std::vector<Candidate>* pending) {
     slots += candidate.table.n;
   }
   found_.clear();
-  const bool keep = !plan_.on_disk || slots * sizeof(FoundSlot) <= plan_.working_bytes / 4;
+  const bool keep = slots * sizeof(FoundSlot) <= plan_.found_bytes;
   PW_ASSIGN_OR_RETURN(SlotPlaces places,
                       CountSlotDocuments(lanes_, corpus_.stream, slot_rules_, index,
                                          pending->size(), keep ? &found_ : nullptr));

@@ -78,10 +78,12 @@ MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
   plan.memory_bytes = plan.on_disk ? std::min(always + limit / 16, limit) : in_memory;
   if (plan.on_disk) {
     plan.working_bytes = std::max<uint64_t>(limit / 4, uint64_t{4} << 20);
+    plan.found_bytes = plan.working_bytes / 4;
     plan.scratch_bytes = static_cast<uint64_t>(entries * kScratchPerEntry);
   }
   if (job.deliver.corpus != CorpusForm::kNone) plan.output_bytes = plan.text_bytes;
   plan.chunk_entries = plan.on_disk ? uint64_t{1} << 16 : uint64_t{1} << 18;
+  if (controls.force_scans) plan.found_bytes = 0;
   if (controls.block_bytes > 0) plan.block_bytes = controls.block_bytes;
   if (controls.chunk_entries > 0) plan.chunk_entries = controls.chunk_entries;
   return plan;

@@ -20,6 +20,7 @@ struct MemoryPlan {
   bool on_disk = false;                        // the stream and the counts lie in scratch files
   uint64_t working_bytes = 0;                  // on disk: what a counting step may hold
   uint64_t chunk_entries = uint64_t{1} << 18;  // of the stream at once
+  uint64_t found_bytes = ~uint64_t{0};         // for the slots that a scan found
   // Estimates.
   uint64_t text_bytes = 0;  // of the inputs, decompressed; a guess for compressed ones
   uint64_t entries = 0;

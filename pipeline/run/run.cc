@@ -1,6 +1,8 @@
 #include "run/run.h"
 
 #include <chrono>
+#include <future>
+#include <memory>
 
 #include "absl/strings/str_cat.h"
 #include "base/status.h"
@@ -77,15 +79,23 @@ RunSummary Summarise(const EncodedCorpus& corpus, const PassResults& results,
   return summary;
 }
 
+// What the mining holds in memory.
+struct Holdings {
+  EncodedCorpus corpus;
+  PassResults results;
+  Delivery delivery;
+  std::vector<PhraseRecord> phrases;
+};
+
 // What is left of the mining once its results are on disk.
 struct Mined {
   RunSummary summary;
   std::vector<InputDigest> digests;
   std::vector<DeliveredFile> written;
+  std::future<void> freed;  // ready when what it held in memory is gone; waits at its end
 };
 
-// The job itself: read, pass by pass, rewrite, records. What it held in memory is gone when it
-// returns.
+// The job itself: read, pass by pass, rewrite, records.
 absl::StatusOr<Mined> Mine(const Job& job, const std::vector<InputFile>& inputs,
                            const RunControls& controls, const RunFolderWriter& folder,
                            FileSystem& files, ThreadLanes& lanes, const Observer& observer,
@@ -97,28 +107,32 @@ absl::StatusOr<Mined> Mine(const Job& job, const std::vector<InputFile>& inputs,
 
   timings->Begin("read");
   observer.stage({0, "", "read", plan.text_bytes, "bytes"});
-  EncodedCorpus corpus;
+  auto holdings = std::make_unique<Holdings>();
+  EncodedCorpus& corpus = holdings->corpus;
+  PassResults& results = holdings->results;
+  Delivery& delivery = holdings->delivery;
   PW_RETURN_IF_ERROR(EncodeCorpus(job, inputs, plan, function_words, folder.scratch(), files, lanes,
                                   observer, &corpus));
-  PassResults results;
   PW_RETURN_IF_ERROR(RunPasses(job, plan, function_words, std::move(rulings), folder.scratch(),
                                files, lanes, observer, timings, &corpus, &results));
   timings->Begin("rewrite");
   observer.stage({0, "", "rewrite", corpus.text_bytes, "bytes"});
   Mined mined;
-  Delivery delivery;
   PW_RETURN_IF_ERROR(DeliverCorpus(job, inputs, plan, folder.folder(), files, lanes, observer,
                                    corpus, results, &delivery, &mined.written));
   timings->Begin("records");
-  PW_ASSIGN_OR_RETURN(
-      std::vector<PhraseRecord> phrases,
-      DeliverRecords(folder.folder(), files, lanes, corpus, results, delivery, &mined.written));
+  PW_ASSIGN_OR_RETURN(holdings->phrases, DeliverRecords(folder.folder(), files, lanes, corpus,
+                                                        results, delivery, &mined.written));
   PW_ASSIGN_OR_RETURN(DeliveredFile job_file,
                       DeliverText(folder.folder(), "job.yaml", WriteJobYaml(job), files));
   mined.written.push_back(job_file);
-  mined.summary = Summarise(corpus, results, phrases);
+  mined.summary = Summarise(corpus, results, holdings->phrases);
   mined.digests = corpus.digests;
   timings->End();
+  // Millions of small pieces: they go while the folder is committed.
+  mined.freed = std::async(
+      std::launch::async,
+      [held = std::shared_ptr<Holdings>(std::move(holdings))]() mutable { held.reset(); });
   return mined;
 }
 
@@ -150,6 +164,7 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
   PW_RETURN_IF_ERROR(deliver_manifest());
   if (job.deliver.report) {
     // The page is made from the run folder like any later one, and then listed in it.
+    mined.freed.wait();
     timings.Begin("report");
     observer.stage({0, "", "report", 0, ""});
     const std::string page = "report.html";

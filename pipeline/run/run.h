@@ -34,6 +34,7 @@ struct RunControls {
   uint64_t block_bytes = 0;    // of text at once; 0: as the memory plan has it (tests set it)
   uint64_t chunk_entries = 0;  // the same for the stream
   bool force_disk = false;     // keep stream and counts in scratch files whatever the size
+  bool force_scans = false;    // merge by scans, as when too many slots were found to keep them
 };
 
 // Runs a job: reads the corpus, carries out the passes, delivers. The run folder appears whole when

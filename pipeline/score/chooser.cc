@@ -155,8 +155,11 @@ std::optional<Choice> Chooser::Choose(std::vector<Candidate> pending) const {
   }
   std::sort(choice.accepted.begin(), choice.accepted.end(), order_);
   if (pass_.take && choice.accepted.size() > *pass_.take) choice.accepted.resize(*pass_.take);
-  std::sort(choice.near_misses.begin(), choice.near_misses.end(), order_);
-  if (choice.near_misses.size() > kMostNearMisses) choice.near_misses.resize(kMostNearMisses);
+  const size_t near = std::min(choice.near_misses.size(), kMostNearMisses);
+  std::partial_sort(choice.near_misses.begin(),
+                    choice.near_misses.begin() + static_cast<ptrdiff_t>(near),
+                    choice.near_misses.end(), order_);
+  choice.near_misses.resize(near);
   if (bound_ &&
       (choice.near_misses.size() < kMostNearMisses || order_(*bound_, choice.near_misses.back()))) {
     return std::nullopt;

@@ -16,7 +16,9 @@ uint32_t FormShard::Add(std::string_view form, uint64_t hash) {
   if (offset == kNone) return kNone;
   if ((uint64_t{size_} + 1) * 8 > slots_.size() * 7) Grow();
   const uint32_t index = size_++;
-  if (index % kChunk == 0) records_.push_back(std::make_unique<Record[]>(kChunk));
+  if (index % kChunk == 0) {
+    records_.push_back(reinterpret_cast<Record*>(pool_->Take(kChunk * sizeof(Record))));
+  }
   record(index) = {kNeverSeen, offset};
   Place({static_cast<uint32_t>(hash), index});
   return index;
@@ -36,7 +38,7 @@ uint32_t FormShard::Find(std::string_view form, uint64_t hash) const {
 
 std::string_view FormShard::form(uint32_t index) const {
   const uint32_t offset = record(index).offset;
-  const char* at = arena_[offset / kArenaBytes].get() + offset % kArenaBytes;
+  const char* at = arena_[offset / kArenaBytes] + offset % kArenaBytes;
   size_t length = 0;
   int shift = 0;
   for (; static_cast<unsigned char>(*at) >= 0x80; ++at, shift += 7) {
@@ -61,17 +63,17 @@ uint32_t FormShard::Store(std::string_view form) {
   if (arena_used_ + bytes > kArenaBytes) {
     const size_t blocks = (bytes + kArenaBytes - 1) / kArenaBytes;
     if ((arena_.size() + blocks) * kArenaBytes > kNone) return kNone;
-    arena_.push_back(std::make_unique<char[]>(blocks * kArenaBytes));
+    arena_.push_back(pool_->Take(blocks * kArenaBytes));
     arena_bytes_ += blocks * kArenaBytes;
     arena_used_ = 0;
   }
   const size_t block = arena_.size() - 1;
   const size_t offset = block * kArenaBytes + arena_used_;
-  char* at = arena_[block].get() + arena_used_;
+  char* at = arena_[block] + arena_used_;
   std::memcpy(at, length, length_bytes);
   std::memcpy(at + length_bytes, form.data(), form.size());
   arena_used_ += bytes;
-  while (arena_.size() * kArenaBytes < offset + bytes) arena_.emplace_back();
+  while (arena_.size() * kArenaBytes < offset + bytes) arena_.push_back(nullptr);
   if (arena_.size() - 1 != block) arena_used_ = kArenaBytes;
   return static_cast<uint32_t>(offset);
 }
@@ -84,7 +86,7 @@ void FormShard::Place(Slot entry) {
 }
 
 void FormShard::Grow() {
-  std::vector<Slot> old(slots_.empty() ? kLeastSlots : slots_.size() * 2);
+  HugeVector<Slot> old(slots_.empty() ? kLeastSlots : slots_.size() * 2);
   old.swap(slots_);
   for (const Slot& entry : old) {
     if (entry.index != kNone) Place(entry);

@@ -2,9 +2,10 @@
 #define PHRASEWELD_WORDS_FORM_SHARD_H_
 
 #include <cstdint>
-#include <memory>
 #include <string_view>
 #include <vector>
+
+#include "base/huge_pages.h"
 
 namespace phraseweld {
 
@@ -17,7 +18,8 @@ class FormShard {
   static constexpr uint64_t kNeverSeen = ~uint64_t{0};
 
   // Holds at most `most_forms` forms and 4 GiB of their bytes.
-  explicit FormShard(uint32_t most_forms) : most_forms_(most_forms) {}
+  // `pool` gives the memory of records and forms, and outlives the shard.
+  FormShard(uint32_t most_forms, HugePool* pool) : most_forms_(most_forms), pool_(pool) {}
 
   // The index of `form`, whose hash is `hash`; added, never seen yet, where it is new. Indexes
   // count from 0 in the order of adding. kNone where the form is new and the shard full.
@@ -59,15 +61,16 @@ class FormShard {
   void Place(Slot entry);
   void Grow();
 
-  std::vector<Slot> slots_;  // open addressing, linear probing; a power of two, at most 7/8 full
+  HugeVector<Slot> slots_;  // open addressing, linear probing; a power of two, at most 7/8 full
   uint32_t size_ = 0;
-  std::vector<std::unique_ptr<Record[]>> records_;
+  std::vector<Record*> records_;
   // A form is its length in base 128, then its bytes. Blocks are kArenaBytes long; a form that is
   // longer takes several block numbers, of which the first has it all and the others have nothing.
-  std::vector<std::unique_ptr<char[]>> arena_;
+  std::vector<char*> arena_;
   size_t arena_used_ = kArenaBytes;  // of the last block
   uint64_t arena_bytes_ = 0;
   uint32_t most_forms_;
+  HugePool* pool_;
 };
 
 }  // namespace phraseweld

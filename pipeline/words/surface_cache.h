@@ -6,9 +6,9 @@
 #include <cstring>
 #include <string_view>
 #include <utility>
-#include <vector>
 
 #include "base/entry.h"
+#include "base/huge_pages.h"
 #include "words/ascii.h"
 
 namespace phraseweld {
@@ -105,7 +105,7 @@ class ShortWordCache {
     return (mixed ^ mixed << 29) >> (64 - kLineBits);
   }
 
-  std::vector<Line> lines_ = std::vector<Line>(size_t{1} << kLineBits);
+  HugeVector<Line> lines_ = HugeVector<Line>(size_t{1} << kLineBits);
 };
 
 // Words of 17 to 56 bytes.
@@ -149,7 +149,7 @@ class LongWordCache {
     return mixed >> (64 - kLineBits);
   }
 
-  std::vector<Line> lines_ = std::vector<Line>(size_t{1} << kLineBits);
+  HugeVector<Line> lines_ = HugeVector<Line>(size_t{1} << kLineBits);
 };
 
 }  // namespace phraseweld

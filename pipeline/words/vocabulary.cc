@@ -5,6 +5,7 @@
 #include <atomic>
 #include <mutex>
 #include <string>
+#include <utility>
 
 #include "absl/hash/hash.h"
 #include "absl/strings/str_cat.h"
@@ -27,6 +28,8 @@ uint32_t ShardOf(uint64_t hash) { return static_cast<uint32_t>(hash >> (64 - kSh
 
 class Vocabulary::Impl {
  public:
+  Impl() : Impl(std::make_index_sequence<kShards>()) {}
+
   uint32_t Intern(std::string_view form, uint64_t place, bool number) {
     const uint64_t hash = HashOf(form);
     const uint32_t number_of_shard = ShardOf(hash);
@@ -42,7 +45,7 @@ class Vocabulary::Impl {
     return index << kShardBits | number_of_shard;
   }
 
-  absl::StatusOr<std::vector<uint32_t>> Finish(const std::vector<std::string>& reserved) {
+  absl::StatusOr<HugeVector<uint32_t>> Finish(const std::vector<std::string>& reserved) {
     std::vector<uint32_t> reserved_ids;
     for (const std::string& form : reserved) {
       const uint64_t hash = HashOf(form);
@@ -61,7 +64,7 @@ class Vocabulary::Impl {
           "the corpus has more distinct words than a run can number, which is at most ", kMostTypes,
           "; mine it in parts"));
     }
-    std::vector<uint32_t> finals(size_t{largest_shard} << kShardBits, kBreak);
+    HugeVector<uint32_t> finals(size_t{largest_shard} << kShardBits, kBreak);
     order_.reserve(form_count);
     for (const uint32_t id : reserved_ids) {
       if (finals[id] != kBreak) continue;
@@ -106,8 +109,12 @@ class Vocabulary::Impl {
     mutable std::mutex mutex;
     // A form's note is (its smallest place) * 2 + (whether it was a number there), which compares
     // as places do; after Finish() its final id * 2 + whether it is a number.
-    FormShard forms{kMostFormsOfShard};
+    FormShard forms;
+    explicit Shard(HugePool* pool) : forms(kMostFormsOfShard, pool) {}
   };
+
+  template <size_t... kNumbers>
+  explicit Impl(std::index_sequence<kNumbers...>) : shards_{((void)kNumbers, Shard(&pool_))...} {}
 
   uint64_t Note(uint32_t provisional) const {
     return shards_[provisional % kShards].forms.note(provisional >> kShardBits);
@@ -118,7 +125,7 @@ class Vocabulary::Impl {
 
   // Calls use(provisional id) for each form that has no final id yet.
   template <typename Use>
-  void ForAllUnnumbered(const std::vector<uint32_t>& finals, Use use) const {
+  void ForAllUnnumbered(const HugeVector<uint32_t>& finals, Use use) const {
     for (uint32_t shard = 0; shard < kShards; ++shard) {
       for (uint32_t index = 0; index < shards_[shard].forms.size(); ++index) {
         const uint32_t id = index << kShardBits | shard;
@@ -129,7 +136,7 @@ class Vocabulary::Impl {
 
   // Appends to order_ the forms without final ids by their places. Sorts bucket by bucket, each an
   // equal share of the places, so that beside the result only one bucket's keys are in memory.
-  void AppendByPlace(const std::vector<uint32_t>& finals) {
+  void AppendByPlace(const HugeVector<uint32_t>& finals) {
     constexpr size_t kBuckets = 4096;
     uint64_t last = 0;
     ForAllUnnumbered(finals, [&](uint32_t id) { last = std::max(last, Note(id)); });
@@ -154,6 +161,7 @@ class Vocabulary::Impl {
     }
   }
 
+  HugePool pool_;
   std::array<Shard, kShards> shards_;
   std::atomic<bool> full_ = false;
   std::vector<uint32_t> order_;  // final id -> provisional id
@@ -167,7 +175,7 @@ uint32_t Vocabulary::Intern(std::string_view form, uint64_t place, bool number) 
   return impl_->Intern(form, place, number);
 }
 
-absl::StatusOr<std::vector<uint32_t>> Vocabulary::Finish(const std::vector<std::string>& reserved) {
+absl::StatusOr<HugeVector<uint32_t>> Vocabulary::Finish(const std::vector<std::string>& reserved) {
   return impl_->Finish(reserved);
 }
 

@@ -9,6 +9,7 @@
 
 #include "absl/status/statusor.h"
 #include "base/entry.h"
+#include "base/huge_pages.h"
 #include "words/splitter.h"
 
 namespace phraseweld {
@@ -29,7 +30,7 @@ class Vocabulary {
   // (whether they occurred or not; duplicates in it are dropped), then the forms of the corpus by
   // their places. Returns the table provisional id -> final id.
   // ResourceExhausted when there are more than kMostTypes forms.
-  absl::StatusOr<std::vector<uint32_t>> Finish(const std::vector<std::string>& reserved);
+  absl::StatusOr<HugeVector<uint32_t>> Finish(const std::vector<std::string>& reserved);
 
   // After Finish(). Thread-safe.
   uint32_t size() const;

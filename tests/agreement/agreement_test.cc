@@ -103,9 +103,10 @@ void ExpectSameFiles(const std::map<std::string, std::string>& expected,
 
 std::string Describe(const Job& job, const std::vector<RefInput>& inputs,
                      const RunControls& controls) {
-  std::string out = absl::StrCat("threads ", job.limits.threads, ", block ", controls.block_bytes,
-                                 ", chunk ", controls.chunk_entries, ", disk ", controls.force_disk,
-                                 ", layout ", static_cast<int>(job.corpus.layout));
+  std::string out =
+      absl::StrCat("threads ", job.limits.threads, ", block ", controls.block_bytes, ", chunk ",
+                   controls.chunk_entries, ", disk ", controls.force_disk, ", scans ",
+                   controls.force_scans, ", layout ", static_cast<int>(job.corpus.layout));
   for (const RefInput& input : inputs) absl::StrAppend(&out, "\n", input.name, ": ", input.bytes);
   return out;
 }
@@ -130,6 +131,7 @@ TEST_F(Agreement, RandomCorporaGiveTheReferenceRunFolder) {
     controls.block_bytes = 1 + random.Below(200);
     controls.chunk_entries = 1 + random.Below(60);
     controls.force_disk = random.Below(3) == 0;
+    controls.force_scans = random.Below(3) == 0;
     const std::string what = absl::StrCat("seed ", seed, ": ", Describe(job, inputs, controls));
     std::map<std::string, std::string> expected;
     bool stops = false;

@@ -33,6 +33,7 @@ FENCED = (
     (r"CLI/", ("cli",)),
     (r"(zstd\w*|zdict|zlib|xxhash)\.h$", ("files",)),
     (r"(\w*intrin|arm_neon|cpuid)\.h$", ("words", "count")),  # SIMD
+    (r"sys/mman\.h$", ("base", "files")),  # memory by the page
     (r"(unistd|termios|signal|sys/ioctl)\.h$", ("files", "cli")),  # the terminal
     (r"iostream$", ("cli",)),
     (r"(thread|future|condition_variable|barrier|latch|semaphore|stop_token)$",

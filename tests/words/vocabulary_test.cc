@@ -104,7 +104,8 @@ TEST(VocabularyTest, CostsFortyBytesAFormBesideItsOwnBytes) {
 }
 
 TEST(FormShardTest, RefusesNewFormsWhenFullAndKeepsTheOld) {
-  FormShard shard(3);
+  HugePool pool;
+  FormShard shard(3, &pool);
   const auto add = [&shard](std::string_view form) {
     return shard.Add(form, absl::Hash<std::string_view>()(form));
   };
@@ -117,7 +118,8 @@ TEST(FormShardTest, RefusesNewFormsWhenFullAndKeepsTheOld) {
 }
 
 TEST(FormShardTest, TellsFormsOfOneHashApart) {
-  FormShard shard(1000);
+  HugePool pool;
+  FormShard shard(1000, &pool);
   for (uint32_t i = 0; i < 200; ++i) EXPECT_EQ(shard.Add(absl::StrCat(i), 42), i);
   for (uint32_t i = 0; i < 200; ++i) EXPECT_EQ(shard.Find(absl::StrCat(i), 42), i);
   EXPECT_EQ(shard.Find("200", 42), FormShard::kNone);
