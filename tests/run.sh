@@ -36,7 +36,7 @@ fi
 echo "== release build, warnings are errors"
 build_targets=(all)
 if build_program build/test -DCMAKE_BUILD_TYPE=Release -DPHRASEWELD_WERROR=ON \
-     -DPHRASEWELD_BENCHMARKS=ON; then
+     -DPHRASEWELD_BENCHMARKS=ON -DPHRASEWELD_UNITY=ON; then
   run_tests build/test
 else
   failed=$((failed + 1))

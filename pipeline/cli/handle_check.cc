@@ -16,18 +16,20 @@ absl::Status HandleCheck(const CheckArguments& arguments, Console& console) {
   out << WriteJobYaml(job) << "\n";
   uint64_t stored = 0;
   for (uint64_t size : report.sizes) stored += size;
-  const auto mebibytes = [](uint64_t bytes) {
-    return absl::StrFormat("%.1f MiB", static_cast<double>(bytes) / (1 << 20));
-  };
+  const auto rounded = [](uint64_t bytes) { return RoundedBytes(static_cast<double>(bytes)); };
   out << absl::StrFormat("# inputs    %d files, %s\n", static_cast<int>(report.inputs.size()),
-                         mebibytes(stored))
+                         rounded(stored))
       << absl::StrFormat("# memory    about %s of the limit of %s; %s\n",
-                         mebibytes(plan.memory_bytes), mebibytes(job.limits.memory),
+                         rounded(plan.memory_bytes), FormatBytes(job.limits.memory),
                          plan.on_disk ? "stream and counts on disk" : "everything in memory")
       << absl::StrFormat("# disk      about %s for the results and %s while it runs; %s free\n",
-                         mebibytes(plan.output_bytes), mebibytes(plan.scratch_bytes),
-                         mebibytes(report.free_bytes))
+                         rounded(plan.output_bytes), rounded(plan.scratch_bytes),
+                         rounded(report.free_bytes))
       << absl::StrFormat("# rounds    %d\n", plan.rounds)
+      << (report.sampled_bytes > 0
+              ? absl::StrFormat("# estimate  from a trial on %s of the text\n",
+                                rounded(report.sampled_bytes))
+              : std::string("# estimate  from the sizes of the inputs alone\n"))
       << absl::StrFormat("# threads   %d\n", report.lanes);
   if (plan.output_bytes + plan.scratch_bytes > report.free_bytes) {
     *console.err << "warning: the disk has less free space than the run will need\n";

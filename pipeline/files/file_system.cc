@@ -82,6 +82,13 @@ class PosixReadFile : public ReadFile {
     return static_cast<size_t>(got);
   }
 
+  absl::Status Seek(uint64_t offset) override {
+    if (lseek(descriptor_.get(), static_cast<off_t>(offset), SEEK_SET) < 0) {
+      return SystemError("seek in", path_, errno);
+    }
+    return absl::OkStatus();
+  }
+
  private:
   std::string path_;
   Descriptor descriptor_;

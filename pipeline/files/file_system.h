@@ -19,6 +19,8 @@ class ReadFile {
   virtual ~ReadFile() = default;
   // Up to `size` bytes into `buffer`; 0 at the end.
   virtual absl::StatusOr<size_t> Read(char* buffer, size_t size) = 0;
+  // Goes on reading at this byte, which must be a file's.
+  virtual absl::Status Seek(uint64_t offset) = 0;
 };
 
 class WriteFile {

@@ -1,6 +1,7 @@
 #include "run/check.h"
 
 #include "base/status.h"
+#include "run/forecast.h"
 #include "run/lanes.h"
 #include "run/passes.h"
 
@@ -14,6 +15,15 @@ absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files) {
   PW_ASSIGN_OR_RETURN(report.sizes, InputSizes(files, report.inputs));
   report.lanes = ThreadLanes(job.limits.threads, nullptr).lanes();
   report.plan = PlanMemory(job, report.inputs, report.sizes, report.lanes, RunControls{});
+  PW_ASSIGN_OR_RETURN(
+      const std::optional<Forecast> forecast,
+      ForecastRun(job, report.inputs, report.sizes, report.plan, report.lanes, files));
+  if (forecast) {
+    report.plan.memory_bytes = forecast->memory_bytes;
+    report.plan.scratch_bytes = forecast->scratch_bytes;
+    report.plan.output_bytes = forecast->output_bytes;
+    report.sampled_bytes = forecast->sampled_bytes;
+  }
   // The run folder need not exist yet: ask the nearest folder above it that does.
   std::string folder = job.run_folder;
   for (;;) {

@@ -19,10 +19,11 @@ struct CheckReport {
   MemoryPlan plan;
   uint64_t free_bytes = 0;  // where the run folder will be
   int lanes = 0;
+  uint64_t sampled_bytes = 0;  // of text that the estimate was made from; 0: from sizes alone
 };
 
-// Reads the job's inputs as far as needed for the estimate (the first mebibytes of some) and checks
-// all that can be checked before a run: function words, rulings, inputs, the run folder.
+// Tries the job on a sample of its inputs for the estimate (see ForecastRun) and checks all that
+// can be checked before a run: function words, rulings, inputs, the run folder.
 absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files);
 
 }  // namespace phraseweld

@@ -79,12 +79,12 @@ absl::Status Renumber(const HugeVector<uint32_t>& final_ids, uint64_t chunk, Thr
 }
 
 // What has to be in memory whatever else is on disk: the words, and a few counters for each.
-// Half of the limit is theirs; blocks under way and the steps of counting share the other half.
+// They may take five eighths of the limit; the rest is for blocks under way and steps of counting.
 absl::Status FitsMemory(const Job& job, const Vocabulary& vocabulary, int lanes) {
   constexpr uint64_t kMebibyte = uint64_t{1} << 20;
   const uint64_t words =
       vocabulary.memory() + uint64_t{vocabulary.size()} * 8 * static_cast<uint64_t>(lanes + 2);
-  const uint64_t least = 2 * words;
+  const uint64_t least = words / 5 * 8;
   if (least <= job.limits.memory) return absl::OkStatus();
   return absl::ResourceExhaustedError(
       absl::StrCat("limits.memory: ", FormatBytes(job.limits.memory),

@@ -13,11 +13,11 @@ namespace phraseweld {
 
 // A stage of a run, as a person following it sees it.
 struct Stage {
-  int pass = 0;           // 0: outside of passes
+  int pass = 0;  // 0: outside of passes
   std::string pass_name;
-  std::string name;       // "read", "count", …
-  uint64_t total = 0;     // amount of work in `unit`; 0: not known
-  std::string unit;       // "bytes", "tokens"
+  std::string name;    // "read", "count", …
+  uint64_t total = 0;  // amount of work in `unit`; 0: not known
+  std::string unit;    // "bytes", "tokens"
 };
 
 // What a run tells about itself while it works. The functions may be called from any thread.

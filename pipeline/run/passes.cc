@@ -341,12 +341,12 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
   return absl::OkStatus();
 }
 
-// Half of the limit is for words and phrases, which have to be in memory whatever is on disk.
+// Words and phrases have to be in memory whatever is on disk.
 absl::Status PassLoop::PhrasesFitMemory(size_t accepted) {
   // A record, its places in the indexes, its text, its derivation, and where it first stands.
-  constexpr uint64_t kPhraseBytes = 420;
+  constexpr uint64_t kPhraseBytes = 900;
   phrase_bytes_ += accepted * kPhraseBytes;
-  const uint64_t least = 2 * (phrase_bytes_ + corpus_.vocabulary.memory());
+  const uint64_t least = (phrase_bytes_ + corpus_.vocabulary.memory()) / 5 * 8;
   if (!plan_.on_disk || least <= job_.limits.memory) return absl::OkStatus();
   constexpr uint64_t kMebibyte = uint64_t{1} << 20;
   return absl::ResourceExhaustedError(absl::StrCat(

@@ -1,21 +1,32 @@
 #include "run/plan.h"
 
 #include <algorithm>
-#include <cmath>
 
+#include "base/entry.h"
 #include "base/status.h"
 
 namespace phraseweld {
 namespace {
 
-// Ratios as measured on English manuals and dictionaries; see DEVELOPERS.md, "Memory".
-constexpr double kBytesPerEntry = 6.0;     // of text, for a word or a mark
-constexpr double kMemoryPerEntry = 9.1;    // stream, counts and their changes, all in memory
-constexpr double kScratchPerEntry = 13.0;  // the same on disk
-constexpr double kWordBytes = 50;          // a different word: its form and its place in the tables
-constexpr double kPhraseBytes = 420;       // a phrase: its records, its text, its place in indexes
-constexpr double kCompression = 4.0;       // of .zst and .gz inputs
-constexpr uint64_t kBase = uint64_t{40} << 20;  // program, ICU's tables, caches of the lanes
+// As measured on text of several kinds; see DEVELOPERS.md, "Memory".
+constexpr double kBytesPerEntry = 5.2;  // of text, for a word or a mark
+constexpr double kCompression = 4.0;    // of .zst and .gz inputs
+// Bytes of memory for a byte of text, with everything in memory: more than any language has taken,
+// since this decides what a run keeps in memory before it knows the text.
+constexpr double kMemoryPerTextByte = 6.0;
+
+constexpr uint64_t kBase = uint64_t{14} << 20;     // program, ICU's tables
+constexpr uint64_t kLaneBase = uint64_t{7} << 20;  // caches, blocks under way
+constexpr double kWordBytes = 60;                  // a different word: its form, its places
+constexpr double kWordLaneBytes = 8;               // its counters in each lane, and two more
+constexpr double kMinedPhraseBytes = 300;          // a phrase while passes go on
+constexpr double kPhraseBytes = 900;               // in the end: records, text, spellings, places
+constexpr double kSlotBytes = 8;                   // a slot that waits to be counted
+constexpr double kSlotTypeBytes = 12;              // a counted slot type
+constexpr double kJoinBytes = 68;                  // a merge: where it was found, what it changed
+constexpr double kDiskWorkingBytes = 8 << 20;      // what counting on disk really holds
+constexpr double kPagePhraseBytes = 1900;          // a phrase while the report is made
+constexpr double kSlotScratch = 10, kSlotTypeScratch = 38;  // the same on disk
 
 bool EndsWith(const std::string& text, const char* end) {
   const std::string tail(end);
@@ -59,27 +70,16 @@ MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
   const uint64_t block = limit / 4 / (5 * plan.blocks_in_flight);
   plan.block_bytes =
       static_cast<size_t>(std::clamp<uint64_t>(block, uint64_t{64} << 10, uint64_t{1} << 20));
-  const uint64_t blocks = 5 * plan.blocks_in_flight * plan.block_bytes;
-  // Different words by Heaps' law; phrases go down as the gate on occurrences goes up.
-  const double entries = static_cast<double>(plan.entries);
-  const double words = 0.75 * std::pow(entries, 0.8);
-  double occurrences = 1;
-  for (const Gate& gate : job.passes.front().accept) {
-    if (gate.quantity == Quantity::kOccurrences) occurrences = gate.least;
-  }
-  const double phrases = entries / 25 / std::max(occurrences, 1.0);
-  const auto always =
-      kBase + blocks +
-      static_cast<uint64_t>(words * (kWordBytes + 8.0 * (lanes + 2)) + phrases * kPhraseBytes);
-  const auto in_memory = always + static_cast<uint64_t>(entries * kMemoryPerEntry);
+  const auto in_memory = kBase + kLaneBase * static_cast<uint64_t>(lanes) +
+                         static_cast<uint64_t>(text * kMemoryPerTextByte);
   // What an archive holds is only known once it has been read, so its stream goes to disk unless
   // there is ample room.
   plan.on_disk = controls.force_disk || in_memory > (unknown ? limit / 2 : limit);
-  plan.memory_bytes = plan.on_disk ? std::min(always + limit / 16, limit) : in_memory;
+  plan.memory_bytes = std::min(in_memory, limit);
   if (plan.on_disk) {
     plan.working_bytes = std::max<uint64_t>(limit / 4, uint64_t{4} << 20);
     plan.found_bytes = plan.working_bytes / 4;
-    plan.scratch_bytes = static_cast<uint64_t>(entries * kScratchPerEntry);
+    plan.scratch_bytes = plan.entries * (sizeof(Entry) + 9);
   }
   if (job.deliver.corpus != CorpusForm::kNone) plan.output_bytes = plan.text_bytes;
   plan.chunk_entries = plan.on_disk ? uint64_t{1} << 16 : uint64_t{1} << 18;
@@ -87,6 +87,37 @@ MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
   if (controls.block_bytes > 0) plan.block_bytes = controls.block_bytes;
   if (controls.chunk_entries > 0) plan.chunk_entries = controls.chunk_entries;
   return plan;
+}
+
+uint64_t MemoryOf(const RunAmounts& amounts, const MemoryPlan& plan, int lanes) {
+  const auto bytes = [](uint64_t count, double each) { return static_cast<double>(count) * each; };
+  const double base = static_cast<double>(kBase + kLaneBase * static_cast<uint64_t>(lanes));
+  const double words = bytes(amounts.words, kWordBytes + kWordLaneBytes * (lanes + 2));
+  const double delivering = bytes(amounts.phrases, kPhraseBytes);
+  double most = delivering + (plan.on_disk ? kDiskWorkingBytes : 0);
+  if (!plan.on_disk) {
+    const double stream = bytes(amounts.entries, sizeof(Entry));
+    const double counting =
+        bytes(amounts.slot_types, kSlotTypeBytes) +
+        std::max(bytes(amounts.slots, kSlotBytes), bytes(amounts.most_joined, kJoinBytes)) +
+        bytes(amounts.phrases, kMinedPhraseBytes);
+    most = stream + std::max(counting, delivering);
+  }
+  const auto mining = static_cast<uint64_t>(base + words + most);
+  // The report is made when the rest is gone.
+  return amounts.page_bytes == 0 ? mining : std::max(mining, PageMemory(amounts.phrases, lanes));
+}
+
+uint64_t PageMemory(uint64_t phrases, int lanes) {
+  return kBase + kLaneBase * static_cast<uint64_t>(lanes) +
+         static_cast<uint64_t>(static_cast<double>(phrases) * kPagePhraseBytes);
+}
+
+uint64_t ScratchOf(const RunAmounts& amounts, const MemoryPlan& plan) {
+  if (!plan.on_disk) return 0;
+  return amounts.entries * sizeof(Entry) +
+         static_cast<uint64_t>(static_cast<double>(amounts.slots) * kSlotScratch +
+                               static_cast<double>(amounts.slot_types) * kSlotTypeScratch);
 }
 
 }  // namespace phraseweld

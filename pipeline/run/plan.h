@@ -37,6 +37,13 @@ absl::StatusOr<std::vector<uint64_t>> InputSizes(FileSystem& files,
 MemoryPlan PlanMemory(const Job& job, const std::vector<InputFile>& inputs,
                       const std::vector<uint64_t>& sizes, int lanes, const RunControls& controls);
 
+// What a run with these amounts takes under the plan, as measured on text of several kinds (see
+// DEVELOPERS.md, "Memory"): peak memory, and disk beside the results.
+uint64_t MemoryOf(const RunAmounts& amounts, const MemoryPlan& plan, int lanes);
+// Of a report on that many phrases.
+uint64_t PageMemory(uint64_t phrases, int lanes);
+uint64_t ScratchOf(const RunAmounts& amounts, const MemoryPlan& plan);
+
 }  // namespace phraseweld
 
 #endif  // PHRASEWELD_RUN_PLAN_H_

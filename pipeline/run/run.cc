@@ -6,6 +6,7 @@
 
 #include "absl/strings/str_cat.h"
 #include "base/status.h"
+#include "base/units.h"
 #include "config/job_file.h"
 #include "files/run_folder_writer.h"
 #include "run/corpus_reading.h"
@@ -17,6 +18,10 @@
 
 namespace phraseweld {
 namespace {
+
+// A report that takes no more than this is made under any limit: the least limit and what a run may
+// take beside it.
+constexpr uint64_t kPageInAnyCase = uint64_t{96} << 20;
 
 // Standard input can be read once, and the job reads its inputs twice.
 absl::StatusOr<std::vector<InputFile>> KeepStandardInput(std::vector<InputFile> inputs,
@@ -73,6 +78,15 @@ RunSummary Summarise(const EncodedCorpus& corpus, const PassResults& results,
         ruling.ruling.file, ":", ruling.ruling.line, ": '", ruling.ruling.phrase,
         ruling.ruling.always ? "' is ruled always, and occurs nowhere"
                              : "' is ruled never, and would not have been made anyway"));
+  }
+  summary.amounts.text_bytes = corpus.text_bytes;
+  summary.amounts.entries = corpus.stream.size;
+  summary.amounts.words = corpus.word_types;
+  summary.amounts.phrases = phrases.size();
+  for (const PassRecord& pass : results.passes) {
+    summary.amounts.slots = std::max(summary.amounts.slots, pass.slots);
+    summary.amounts.slot_types = std::max(summary.amounts.slot_types, pass.slot_types);
+    summary.amounts.most_joined = std::max(summary.amounts.most_joined, pass.joined);
   }
   summary.scratch_bytes = results.scratch_bytes;
   summary.rounds = results.rounds;
@@ -162,7 +176,13 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
         .status();
   };
   PW_RETURN_IF_ERROR(deliver_manifest());
-  if (job.deliver.report) {
+  const uint64_t page_memory = PageMemory(mined.summary.totals.phrases, lanes.lanes());
+  if (job.deliver.report && page_memory > std::max(job.limits.memory, kPageInAnyCase)) {
+    mined.summary.warnings.push_back(absl::StrCat(
+        "report.html was left out: for ", FormatCount(mined.summary.totals.phrases),
+        " phrases it takes about ", RoundedBytes(static_cast<double>(page_memory)),
+        " of memory, more than limits.memory; `phraseweld report` makes it from the run"));
+  } else if (job.deliver.report) {
     // The page is made from the run folder like any later one, and then listed in it.
     mined.freed.wait();
     timings.Begin("report");
@@ -175,6 +195,9 @@ absl::StatusOr<RunSummary> RunJob(const Job& job, const RunControls& controls, F
     PW_RETURN_IF_ERROR(deliver_manifest());
   }
   PW_RETURN_IF_ERROR(folder->Commit());
+  for (const DeliveredFile& file : mined.written) {
+    mined.summary.outputs.emplace_back(file.path, file.digest.bytes);
+  }
   mined.summary.run_folder = job.run_folder;
   mined.summary.seconds =
       std::chrono::duration<double>(std::chrono::steady_clock::now() - begun).count();

@@ -18,6 +18,14 @@ struct RunTotals {
   uint64_t tokens_out = 0, words_in_phrases = 0, bad_lines = 0;
 };
 
+// How much there was of what takes memory and disk.
+struct RunAmounts {
+  uint64_t text_bytes = 0, entries = 0, words = 0, phrases = 0;
+  uint64_t slots = 0, slot_types = 0;  // at the most in a pass
+  uint64_t most_joined = 0;            // the same
+  uint64_t page_bytes = 0;             // of the report
+};
+
 // What a run has to tell when it is done.
 struct RunSummary {
   RunTotals totals;
@@ -25,7 +33,9 @@ struct RunSummary {
   std::vector<std::string> warnings;          // rulings without effect, lines kept though bad
   std::string run_folder;
   double seconds = 0;
-  uint64_t scratch_bytes = 0;  // at the most, on disk beside the results
+  RunAmounts amounts;
+  std::vector<std::pair<std::string, uint64_t>> outputs;  // files by their path, and their bytes
+  uint64_t scratch_bytes = 0;                             // at the most, on disk beside the results
   int rounds = 0;
 };
 

@@ -10,24 +10,11 @@
 #include "files/file_system.h"
 #include "read/corpus.h"
 #include "run/observer.h"
+#include "run/passing_folder.h"
 #include "run/verify.h"
 #include "run/verify_faults.h"
 
 namespace phraseweld {
-
-// A folder for the time that it lives, in the system's folder for such things.
-class PassingFolder {
- public:
-  explicit PassingFolder(FileSystem& files) : files_(files) {}
-  ~PassingFolder();
-  PassingFolder(const PassingFolder&) = delete;
-  PassingFolder& operator=(const PassingFolder&) = delete;
-  absl::StatusOr<std::string> Path();  // made when it is first asked for
-
- private:
-  FileSystem& files_;
-  std::string path_;
-};
 
 // The part of a verification that looks at whole files.
 struct FolderCheck {

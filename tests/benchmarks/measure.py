@@ -29,11 +29,11 @@ words:
 passes:
   - name: pairs
     rank_by: pmi
-    accept: {{occurrences: 8, documents: 3, pmi: 4.0}}
+    accept: {{occurrences: {first}, documents: 3, pmi: 4.0}}
   - name: longer
     repeat: 4
     rank_by: pmi
-    accept: {{occurrences: 5, documents: 3, pmi: 4.0}}
+    accept: {{occurrences: {later}, documents: 3, pmi: 4.0}}
 deliver:
   corpus: source
   report: false
@@ -48,7 +48,7 @@ class Job(runner.Measured):
     """A whole job of five passes; keeps the timings of each run's manifest."""
 
     def __init__(self, settings, name, corpus, layout, threads=2, memory="2 GiB",
-                 function_words="english"):
+                 function_words="english", gates=(8, 5)):
         self.run_folder = os.path.join(settings.work, "runs", name)
         self.corpus = corpus
         self.timings = []
@@ -56,7 +56,8 @@ class Job(runner.Measured):
         os.makedirs(os.path.dirname(path), exist_ok=True)
         with open(path, "w", encoding="utf-8") as file:
             file.write(JOB.format(name=name, folder=self.run_folder, corpus=corpus, layout=layout,
-                                  threads=threads, memory=memory, function_words=function_words))
+                                  threads=threads, memory=memory, function_words=function_words,
+                                  first=gates[0], later=gates[1]))
         super().__init__(name, [settings.program, "run", path], before=self.clear,
                          after=self.keep_timings)
 
@@ -187,7 +188,7 @@ def measure_sizes(settings):
     jobs = []
     for factor in (1, 4, 16, 64):
         text, planted = corpora.make(settings, settings.base_size * factor)
-        job = Job(settings, f"size-{factor}", text, "lines")
+        job = Job(settings, f"size-{factor}", text, "lines", memory="1 TiB")
         job.planted = planted
         jobs.append(job)
     for job in jobs:
@@ -211,7 +212,10 @@ def measure_memory(settings):
     """The same made text under three limits of memory."""
     text, planted = corpora.make(settings, settings.memory_size)
     runner.warm(text)
-    jobs = [Job(settings, "memory-" + limit.replace(" ", ""), text, "lines", memory=limit)
+    # Phrases have to be in memory: gates that rise with the text keep them to some ten thousand.
+    first = max(8, settings.memory_size // MEBIBYTE * 200 // 256)
+    jobs = [Job(settings, "memory-" + limit.replace(" ", ""), text, "lines", memory=limit,
+                gates=(first, max(5, first // 2)))
             for limit in ("1 TiB", "2 GiB", "256 MiB")]
     runner.alternate(jobs, settings.memory_repeats)
     heading(f"Memory, {mebibytes(os.path.getsize(text))} of made text, 2 threads, "

@@ -70,6 +70,8 @@ class FaultyFileSystem : public ForwardingFileSystem {
       return file_->Read(buffer, size);
     }
 
+    absl::Status Seek(uint64_t offset) override { return file_->Seek(offset); }
+
    private:
     FaultyFileSystem& faults_;
     std::unique_ptr<ReadFile> file_;
