@@ -18,13 +18,13 @@ echo
 echo "\$ phraseweld verify runs/demo"
 $phraseweld verify runs/demo
 echo
-echo "The best phrases that stand on their own, the pass that made each, and how often it occurs:"
+echo "The best phrases, the pass that made each, and how often it occurs (inside longer ones too):"
 # inventory.tsv: phrase words pass occurrences inside_longer documents surface pmi npmi g2
-awk -F'\t' 'NR > 1 && $4 > 0 {printf "  pass %d  %4d x in %3d documents   %s\n", $3, $4, $6, $7}' runs/demo/inventory.tsv |
+awk -F'\t' 'NR > 1 && $4 > 0 {printf "  pass %d  %4d x in %3d documents   %s\n", $3, $4 + $5, $6, $7}' runs/demo/inventory.tsv |
   sed -n '1,25p'
 echo
 echo "And the longest:"
-awk -F'\t' 'NR > 1 && $2 >= 4 && $4 > 0 {printf "  pass %d  %4d x in %3d documents   %s\n", $3, $4, $6, $7}' runs/demo/inventory.tsv |
+awk -F'\t' 'NR > 1 && $2 >= 4 && $4 > 0 {printf "  pass %d  %4d x in %3d documents   %s\n", $3, $4 + $5, $6, $7}' runs/demo/inventory.tsv |
   sed -n '1,10p'
 echo
 echo "Results: runs/demo (report.html is the page to look at)"

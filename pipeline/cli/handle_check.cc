@@ -2,6 +2,7 @@
 #include "base/status.h"
 #include "base/units.h"
 #include "cli/handle_run.h"
+#include "cli/watch.h"
 #include "config/job_file.h"
 #include "run/check.h"
 
@@ -10,7 +11,10 @@ namespace phraseweld {
 absl::Status HandleCheck(const CheckArguments& arguments, Console& console) {
   FileSystem& files = FileSystem::Posix();
   PW_ASSIGN_OR_RETURN(const Job job, LoadJob(files, arguments.job_file, arguments.settings));
-  PW_ASSIGN_OR_RETURN(const CheckReport report, CheckJob(job, files));
+  Watch watch(console, true);
+  const absl::StatusOr<CheckReport> checked = CheckJob(job, files, watch.observer());
+  PW_RETURN_IF_ERROR(watch.End(checked.status()));
+  const CheckReport& report = *checked;
   const MemoryPlan& plan = report.plan;
   std::ostream& out = *console.out;
   out << WriteJobYaml(job) << "\n";

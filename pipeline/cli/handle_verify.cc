@@ -6,7 +6,7 @@
 #include "base/status.h"
 #include "base/strings.h"
 #include "base/units.h"
-#include "cli/progress.h"
+#include "cli/watch.h"
 #include "run/verify.h"
 
 namespace phraseweld {
@@ -39,17 +39,10 @@ std::string Summary(const VerifyReport& report, const std::string& folder) {
 }  // namespace
 
 absl::Status HandleVerify(const VerifyArguments& arguments, Console& console) {
-  Progress progress(console);
-  Stage current;
-  Observer observer;
-  observer.stage = [&](const Stage& stage) { current = stage; };
-  observer.advance = [&](uint64_t done) {
-    progress.Update({0, "", current.name, done, current.total, current.unit});
-  };
+  Watch watch(console);
   const absl::StatusOr<VerifyReport> report =
-      VerifyRun(FileSystem::Posix(), arguments.run_folder, observer);
-  progress.Clear();
-  PW_RETURN_IF_ERROR(report.status());
+      VerifyRun(FileSystem::Posix(), arguments.run_folder, watch.observer());
+  PW_RETURN_IF_ERROR(watch.End(report.status()));
   *console.out << Summary(*report, arguments.run_folder);
   return absl::OkStatus();
 }

@@ -7,7 +7,7 @@
 
 namespace phraseweld {
 
-absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files) {
+absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files, const Observer& observer) {
   PW_RETURN_IF_ERROR(FunctionWordForms(job).status());
   PW_RETURN_IF_ERROR(ResolveRulings(job).status());
   CheckReport report;
@@ -17,7 +17,7 @@ absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files) {
   report.plan = PlanMemory(job, report.inputs, report.sizes, report.lanes, RunControls{});
   PW_ASSIGN_OR_RETURN(
       const std::optional<Forecast> forecast,
-      ForecastRun(job, report.inputs, report.sizes, report.plan, report.lanes, files));
+      ForecastRun(job, report.inputs, report.sizes, report.plan, report.lanes, files, observer));
   if (forecast) {
     report.plan.memory_bytes = forecast->memory_bytes;
     report.plan.scratch_bytes = forecast->scratch_bytes;

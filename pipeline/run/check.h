@@ -8,6 +8,7 @@
 #include "base/job.h"
 #include "files/file_system.h"
 #include "read/corpus.h"
+#include "run/observer.h"
 #include "run/plan.h"
 
 namespace phraseweld {
@@ -24,7 +25,7 @@ struct CheckReport {
 
 // Tries the job on a sample of its inputs for the estimate (see ForecastRun) and checks all that
 // can be checked before a run: function words, rulings, inputs, the run folder.
-absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files);
+absl::StatusOr<CheckReport> CheckJob(const Job& job, FileSystem& files, const Observer& observer);
 
 }  // namespace phraseweld
 

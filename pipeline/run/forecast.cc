@@ -1,6 +1,7 @@
 #include "run/forecast.h"
 
 #include <algorithm>
+#include <atomic>
 #include <cmath>
 #include <map>
 #include <string>
@@ -119,7 +120,7 @@ std::string KindOf(std::string_view path) {
 }
 
 absl::StatusOr<Amounts> TrialRun(Job job, const Sample& sample, const std::string& folder,
-                                 FileSystem& files) {
+                                 FileSystem& files, const std::atomic<bool>* stop) {
   PW_RETURN_IF_ERROR(files.MakeDirectories(folder));
   job.run_folder = folder + "/run";
   job.limits.memory = kNoLimit;
@@ -134,7 +135,9 @@ absl::StatusOr<Amounts> TrialRun(Job job, const Sample& sample, const std::strin
     PW_RETURN_IF_ERROR(file->Close());
     job.corpus.files.push_back(path);
   }
-  PW_ASSIGN_OR_RETURN(const RunSummary run, RunJob(job, RunControls{}, files, Observer{}));
+  Observer quiet;
+  quiet.stop = stop;
+  PW_ASSIGN_OR_RETURN(const RunSummary run, RunJob(job, RunControls{}, files, quiet));
   Amounts amounts;
   amounts["entries"] = static_cast<double>(run.amounts.entries);
   amounts["words"] = static_cast<double>(run.amounts.words);
@@ -169,7 +172,7 @@ absl::StatusOr<std::optional<Forecast>> ForecastRun(const Job& job,
                                                     const std::vector<InputFile>& inputs,
                                                     const std::vector<uint64_t>& sizes,
                                                     const MemoryPlan& plan, int lanes,
-                                                    FileSystem& files) {
+                                                    FileSystem& files, const Observer& observer) {
   for (const InputFile& input : inputs) {
     if (input.path == "-") return std::nullopt;
   }
@@ -178,11 +181,13 @@ absl::StatusOr<std::optional<Forecast>> ForecastRun(const Job& job,
   if (whole_sample.bytes == 0) return std::nullopt;
   PassingFolder passing(files);
   PW_ASSIGN_OR_RETURN(const std::string folder, passing.Path());
-  PW_ASSIGN_OR_RETURN(const Amounts whole, TrialRun(job, whole_sample, folder + "/whole", files));
+  PW_ASSIGN_OR_RETURN(const Amounts whole,
+                      TrialRun(job, whole_sample, folder + "/whole", files, observer.stop));
   Amounts all = whole;
   const double times = whole_sample.all_bytes / static_cast<double>(whole_sample.bytes);
   if (half_sample.bytes > 0 && half_sample.bytes < whole_sample.bytes && times > 1.01) {
-    PW_ASSIGN_OR_RETURN(const Amounts half, TrialRun(job, half_sample, folder + "/half", files));
+    PW_ASSIGN_OR_RETURN(const Amounts half,
+                        TrialRun(job, half_sample, folder + "/half", files, observer.stop));
     all = Extrapolate(
         half, whole,
         static_cast<double>(whole_sample.bytes) / static_cast<double>(half_sample.bytes), times);

@@ -9,6 +9,7 @@
 #include "base/job.h"
 #include "files/file_system.h"
 #include "read/corpus.h"
+#include "run/observer.h"
 #include "run/plan.h"
 
 namespace phraseweld {
@@ -29,7 +30,7 @@ absl::StatusOr<std::optional<Forecast>> ForecastRun(const Job& job,
                                                     const std::vector<InputFile>& inputs,
                                                     const std::vector<uint64_t>& sizes,
                                                     const MemoryPlan& plan, int lanes,
-                                                    FileSystem& files);
+                                                    FileSystem& files, const Observer& observer);
 
 }  // namespace phraseweld
 

@@ -47,7 +47,7 @@ class ForecastTest : public ::testing::Test {
     return *std::move(job);
   }
   uint64_t Foreseen(const Job& job) {
-    const auto report = CheckJob(job, files_);
+    const auto report = CheckJob(job, files_, Observer{});
     EXPECT_TRUE(report.ok()) << report.status();
     EXPECT_GT(report->sampled_bytes, 0u);
     return report->plan.output_bytes;
