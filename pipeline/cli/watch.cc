@@ -43,9 +43,9 @@ Watch::~Watch() {
   std::signal(SIGTERM, before_[1]);
 }
 
-absl::Status Watch::End(const absl::Status& status, const char* interrupted) {
+absl::Status Watch::End(const absl::Status& status, const char* when_interrupted) {
   progress_.Clear();
-  return absl::IsCancelled(status) ? absl::CancelledError(interrupted) : status;
+  return absl::IsCancelled(status) ? absl::CancelledError(when_interrupted) : status;
 }
 
 }  // namespace phraseweld

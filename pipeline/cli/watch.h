@@ -24,7 +24,7 @@ class Watch {
 
   // Removes the line of progress. Returns the status of the work, for one that was interrupted with
   // what that leaves.
-  absl::Status End(const absl::Status& status, const char* interrupted = "interrupted");
+  absl::Status End(const absl::Status& status, const char* when_interrupted = "interrupted");
 
  private:
   Progress progress_;

@@ -79,29 +79,29 @@ absl::Status ThreadLanes::ForEach(size_t count,
 }
 
 absl::Status ThreadLanes::RunPipeline(size_t in_flight, const UntypedSteps& steps) {
-  struct Slot {
+  struct Carrier {
     std::shared_ptr<void> item;
     size_t number = 0;
   };
   FirstError error;
   std::mutex free_mutex;
-  std::vector<std::unique_ptr<Slot>> slots;
-  std::vector<Slot*> free_slots;
+  std::vector<std::unique_ptr<Carrier>> slots;
+  std::vector<Carrier*> free_slots;
   size_t made = 0;
-  const auto fail = [&](Slot* slot, absl::Status status) {
+  const auto fail = [&](Carrier* slot, absl::Status status) {
     if (!status.ok()) error.Set(slot->number, std::move(status));
   };
   // After an error the items still under way pass through untouched.
-  const auto make = [&](tbb::flow_control& flow) -> Slot* {
+  const auto make = [&](tbb::flow_control& flow) -> Carrier* {
     if (error.failed() || stopped()) {
       flow.stop();
       return nullptr;
     }
-    Slot* slot = nullptr;
+    Carrier* slot = nullptr;
     {
       std::lock_guard<std::mutex> lock(free_mutex);
       if (free_slots.empty()) {
-        slots.push_back(std::make_unique<Slot>());
+        slots.push_back(std::make_unique<Carrier>());
         slots.back()->item = steps.create();
         free_slots.push_back(slots.back().get());
       }
@@ -117,27 +117,28 @@ absl::Status ThreadLanes::RunPipeline(size_t in_flight, const UntypedSteps& step
     }
     return slot;
   };
-  const auto work = [&](Slot* slot) {
+  const auto work = [&](Carrier* slot) {
     if (!error.failed() && !stopped()) {
       fail(slot, steps.work(tbb::this_task_arena::current_thread_index(), slot->item.get()));
     }
     return slot;
   };
-  const auto place = [&](Slot* slot) {
+  const auto place = [&](Carrier* slot) {
     if (!error.failed() && !stopped()) fail(slot, steps.place(slot->item.get()));
     return slot;
   };
-  const auto store = [&](Slot* slot) {
+  const auto store = [&](Carrier* slot) {
     if (!error.failed() && !stopped()) fail(slot, steps.store(slot->item.get()));
     std::lock_guard<std::mutex> lock(free_mutex);
     free_slots.push_back(slot);
   };
   arena_->arena().execute([&] {
     tbb::parallel_pipeline(
-        in_flight, tbb::make_filter<void, Slot*>(tbb::filter_mode::serial_in_order, make) &
-                       tbb::make_filter<Slot*, Slot*>(tbb::filter_mode::parallel, work) &
-                       tbb::make_filter<Slot*, Slot*>(tbb::filter_mode::serial_in_order, place) &
-                       tbb::make_filter<Slot*, void>(tbb::filter_mode::parallel, store));
+        in_flight,
+        tbb::make_filter<void, Carrier*>(tbb::filter_mode::serial_in_order, make) &
+            tbb::make_filter<Carrier*, Carrier*>(tbb::filter_mode::parallel, work) &
+            tbb::make_filter<Carrier*, Carrier*>(tbb::filter_mode::serial_in_order, place) &
+            tbb::make_filter<Carrier*, void>(tbb::filter_mode::parallel, store));
   });
   if (error.failed()) return error.status();
   return stopped() ? Interrupted() : absl::OkStatus();

@@ -9,10 +9,12 @@ some 25 MiB is this script's own, which a process starts from.
 import argparse
 import json
 import os
+import re
 import shutil
 import statistics
 import subprocess
 import sys
+import threading
 
 import corpora
 import runner
@@ -251,8 +253,78 @@ def measure_languages(settings):
     return [job.record() for job in jobs.values()]
 
 
+def folder_bytes(folder):
+    """Bytes on disk below a folder whose files may go while they are looked at."""
+    size = 0
+    for place, _, names in os.walk(folder):
+        for name in names:
+            try:
+                size += os.stat(os.path.join(place, name)).st_blocks * 512
+            except OSError:
+                pass
+    return size
+
+
+class Foreseen(Job):
+    """A job, what `check` says it will take, and what it takes."""
+
+    def foresee(self, program):
+        told = subprocess.run([program, "check", self.command[-1]], capture_output=True, text=True,
+                              check=True).stdout
+        number = r"([0-9.]+) (B|KiB|MiB|GiB)"
+        memory = re.search(f"# memory +about {number}", told)
+        disk = re.search(f"# disk +about {number} for the results and {number}", told)
+        size = lambda value, unit: float(value) * 1024 ** ("B", "KiB", "MiB", "GiB").index(unit)
+        self.told = {"memory": size(*memory.groups()), "results": size(*disk.groups()[:2]),
+                     "scratch": size(*disk.groups()[2:])}
+
+    def run_watched(self):
+        scratch, ended = [0], threading.Event()
+
+        def watch():
+            while not ended.wait(0.02):
+                scratch.append(folder_bytes(os.path.join(self.run_folder + ".partial", "scratch")))
+
+        watcher = threading.Thread(target=watch)
+        watcher.start()
+        try:
+            self.run_once()
+        finally:
+            ended.set()
+            watcher.join()
+        self.took = {"memory": self.most_memory(), "scratch": max(scratch),
+                     "results": sum(file["bytes"] for file in self.manifest()["outputs"])}
+
+
+def measure_foresight(settings):
+    """What `check` says beside what `run` takes."""
+    text, _ = corpora.make(settings, settings.memory_size)
+    texts = {name: os.path.join(settings.work, name + ".txt") for name in corpora.LANGUAGES}
+    jobs = [Foreseen(settings, "foreseen-english", settings.english, "paragraphs"),
+            Foreseen(settings, "foreseen-english-on-disk", settings.english, "paragraphs",
+                     memory="256 MiB"),
+            Foreseen(settings, "foreseen-made", text, "lines", memory="1 TiB"),
+            Foreseen(settings, "foreseen-made-on-disk", text, "lines", memory="256 MiB",
+                     gates=(50, 50))]
+    jobs += [Foreseen(settings, "foreseen-" + name, path, "paragraphs", function_words="none")
+             for name, path in texts.items()]
+    heading("What check foresees, against what run takes")
+    row("", "memory", "results", "scratch")
+    records = []
+    for job in jobs:
+        job.foresee(settings.program)
+        job.run_watched()
+        row(job.name[len("foreseen-"):],
+            *(f"{job.told[what] / job.took[what] - 1:+.0%}" if job.took[what] else "0"
+              for what in ("memory", "results", "scratch")))
+        records.append({**job.record(), "foreseen": job.told, "took": job.took})
+        job.clear()
+    return records
+
+
 SECTIONS = {"whole": measure_whole, "threads": measure_threads, "sizes": measure_sizes,
-            "memory": measure_memory, "languages": measure_languages}
+            "memory": measure_memory, "languages": measure_languages,
+            "foresight": measure_foresight}
 
 
 def parse():

@@ -1,7 +1,7 @@
 #!/bin/sh
 # Measures the program on this machine and prints a table of ratios; nothing passes or fails by it.
 #
-#   tests/benchmarks/run.sh [SECTION...]      sections: whole threads sizes memory languages
+#   tests/benchmarks/run.sh [SECTION...]      sections: whole threads sizes memory languages foresight
 #
 # It builds a release, fetches real text that Debian packages carry, makes the rest, and writes
 # every single time to tests/benchmarks/results/. With nothing else running on the machine it takes

@@ -103,5 +103,24 @@ TEST_F(ForecastTest, ATrialLeavesNothing) {
   EXPECT_FALSE(fs::exists(folder_.Path("run")));
 }
 
+TEST_F(ForecastTest, AReportLargerThanTheLimitIsLeftOutAndSaidSo) {
+  std::string text;
+  for (int i = 0; i < 40000; ++i) AppendTo(&text, "l", i, "x r", i, "\nl", i, "x r", i, "\n");
+  const std::string path =
+      folder_.Put("job.yaml", Concat("job: pairs\nrun_folder: ", folder_.Path("run"),
+                                     "\ncorpus: {files: [", folder_.Put("pairs.txt", text),
+                                     "], layout: lines}\npasses: [{accept: {occurrences: 2}}]\n"
+                                     "limits: {memory: 64 MiB, threads: 2}\n"));
+  const auto job = LoadJob(files_, path, {});
+  ASSERT_TRUE(job.ok()) << job.status();
+  const auto run = RunJob(*job, RunControls{}, files_, Observer{});
+  ASSERT_TRUE(run.ok()) << run.status();
+  EXPECT_EQ(run->totals.phrases, 40000u);
+  EXPECT_THAT(run->warnings,
+              ::testing::ElementsAre(::testing::HasSubstr("report.html was left out")));
+  EXPECT_FALSE(folder_.Has("run/report.html"));
+  EXPECT_TRUE(folder_.Has("run/manifest.json"));
+}
+
 }  // namespace
 }  // namespace phraseweld
