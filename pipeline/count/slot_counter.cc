@@ -18,8 +18,11 @@ namespace {
 
 // Slots a partition that are counted at once in the second-level cache of common processors.
 constexpr uint64_t kSlotsPerPartition = 48 * 1024;
-constexpr size_t kMostPartitions = 2048;    // more would thrash the address translation cache
-constexpr size_t kChunkRecords = 1024;      // 8 KiB in memory
+constexpr size_t kMostPartitions = 2048;  // more would thrash the address translation cache
+constexpr size_t kChunkRecords = 1024;    // 8 KiB in memory
+// On disk fewer: each holds a buffer for every lane, and partitions larger than the working memory
+// are taken in slices.
+constexpr size_t kMostDiskPartitions = 512;
 constexpr size_t kDiskChunkRecords = 2048;  // 16 KiB a write
 
 // (left, bridge, right) in one integer, so that its order is the order of the three.
@@ -67,7 +70,8 @@ class SlotStore final : public SlotCounter {
       wanted = slots * sizeof(Key) * 5 / std::max<uint64_t>(lane_bytes, 1);
       slice_records_ = std::max<uint64_t>(lane_bytes / (4 * sizeof(Delta<Key>)), 4096);
     }
-    partition_bits_ = std::bit_width(std::clamp<uint64_t>(wanted, 8, kMostPartitions) - 1);
+    const size_t most = options_.on_disk ? kMostDiskPartitions : kMostPartitions;
+    partition_bits_ = std::bit_width(std::clamp<uint64_t>(wanted, 8, most) - 1);
     const size_t partitions = size_t{1} << partition_bits_;
     const std::string base = options_.scratch_folder + "/";
     if (options_.on_disk) {
@@ -75,11 +79,20 @@ class SlotStore final : public SlotCounter {
       PW_ASSIGN_OR_RETURN(removed_file_, options_.files->CreateScratch(base + "slots-removed"));
       PW_ASSIGN_OR_RETURN(right_file_, options_.files->CreateScratch(base + "margins-changed"));
     }
-    const size_t chunk = options_.on_disk ? kDiskChunkRecords : kChunkRecords;
-    added_ = std::make_unique<Spool<Key>>(partitions, options_.lanes, chunk, added_file_.get());
-    removed_ = std::make_unique<Spool<Key>>(partitions, options_.lanes, chunk, removed_file_.get());
-    right_changes_ =
-        std::make_unique<Spool<Delta<Key>>>(partitions, options_.lanes, chunk, right_file_.get());
+    // A third of half the working memory for the buffers of each spool.
+    const auto chunk = [&](size_t record_bytes) {
+      const uint64_t buffers = 6 * partitions * static_cast<uint64_t>(options_.lanes);
+      return options_.on_disk
+                 ? std::clamp<uint64_t>(options_.working_bytes / buffers / record_bytes, 64,
+                                        kDiskChunkRecords)
+                 : kChunkRecords;
+    };
+    added_ = std::make_unique<Spool<Key>>(partitions, options_.lanes, chunk(sizeof(Key)),
+                                          added_file_.get());
+    removed_ = std::make_unique<Spool<Key>>(partitions, options_.lanes, chunk(sizeof(Key)),
+                                            removed_file_.get());
+    right_changes_ = std::make_unique<Spool<Delta<Key>>>(
+        partitions, options_.lanes, chunk(sizeof(Delta<Key>)), right_file_.get());
     bulk_.resize(partitions);
     PW_RETURN_IF_ERROR(
         tables_.Open(partitions, options_.on_disk, options_.files, base + "slot-counts"));
