@@ -69,12 +69,13 @@ absl::Status EntryArray::Seal(uint64_t size) {
 
 void EntryArray::Release(uint64_t begin, uint64_t end) {
   if (scratch_ == nullptr || begin >= end) return;
-  // A fault maps some pages around the one that was asked for, also of a range given back before.
-  // Giving back a neighbour's page that is in use costs it another fault, and nothing else.
-  constexpr uint64_t kPage = 4096, kAround = uint64_t{128} << 10;
+  // A fault maps some pages around the one that was asked for, also of a range given back before:
+  // as much as the page cache holds in one piece, up to a large page. Giving back a neighbour's
+  // page that is in use costs it another fault, and nothing else.
+  constexpr uint64_t kPage = 4096, kBefore = uint64_t{2} << 20, kAfter = uint64_t{128} << 10;
   const uint64_t first = begin * sizeof(Entry), last = end * sizeof(Entry);
-  const uint64_t from = (first - std::min(first, kAround)) / kPage * kPage;
-  const uint64_t to = std::min(mapped_bytes_, last + kAround) / kPage * kPage;
+  const uint64_t from = (first - std::min(first, kBefore)) / kPage * kPage;
+  const uint64_t to = std::min(mapped_bytes_, last + kAfter) / kPage * kPage;
   if (from < to) madvise(reinterpret_cast<char*>(data_) + from, to - from, MADV_DONTNEED);
 }
 
