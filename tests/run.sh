@@ -54,13 +54,12 @@ else
 fi
 
 echo "== thread sanitizer"
-# The vocabulary is what threads write to together; its tests start threads of their own. oneTBB is
-# not built with the sanitizer, which takes its hand-overs for races, so that what runs on oneTBB is
-# held to the same bytes under 1, 2, 3 and 8 threads instead.
-build_targets=(words_test)
+# Whole runs, on the standard library's threads in place of oneTBB's (tests/support/threads).
+build_targets=(words_test agreement_test)
 if build_program build/tsan -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCMAKE_CXX_FLAGS_RELWITHDEBINFO=-O1 \
      -DPHRASEWELD_SANITIZE=thread -DPHRASEWELD_UNITY=ON; then
-  GTEST_FILTER='*IdsDepend*:Vocabulary*' run_tests build/tsan -R '^words$'
+  GTEST_FILTER='*IdsDepend*:Vocabulary*:Agreement*' PHRASEWELD_AGREEMENT_ROUNDS=60 \
+    PHRASEWELD_AGREEMENT_SEED=5301 run_tests build/tsan -R '^(words|agreement)$'
 else
   failed=$((failed + 1))
 fi

@@ -61,6 +61,10 @@ absl::Status BlockWalk::Piece(const WalkPiece& piece) {
         {"", piece.document, piece.field, piece.begins_passage, piece.ends_passage});
   }
   for (size_t i = 0; i < piece.words.size(); ++i) {
+    if (!in_token_ && !options_.words) {
+      i = PassWords(i, piece.words.size());
+      if (i == piece.words.size()) break;
+    }
     while (at_ < end_ && stream_[at_] == kBreak) ++at_;
     if (at_ >= end_ || IsMark(stream_[at_])) return Changed();
     const Entry entry = stream_[at_];
@@ -90,6 +94,22 @@ absl::Status BlockWalk::Piece(const WalkPiece& piece) {
   while (at_ < end_ && stream_[at_] == kBreak) ++at_;
   if (!piece.ends_passage) return absl::OkStatus();
   return Expect(piece.ends_document ? kDocumentEnd : kPassageEnd);
+}
+
+size_t BlockWalk::PassWords(size_t word, size_t words) {
+  uint64_t end = end_;
+  if (options_.wanted != nullptr && wanted_ < options_.wanted->size()) {
+    end = std::min(end, (*options_.wanted)[wanted_]);
+  }
+  const uint32_t word_types = options_.types->word_types();
+  // Breaks are as common as they are hard to foretell, hence no branch for them.
+  for (; word < words && at_ < end; ++at_) {
+    const Entry entry = stream_[at_];
+    const bool is_word = entry < word_types;
+    if (!is_word && entry != kBreak) break;
+    word += is_word;
+  }
+  return word;
 }
 
 absl::Status BlockWalk::EmptyDocument(bool ends) {

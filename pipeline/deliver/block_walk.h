@@ -86,6 +86,9 @@ class BlockWalk {
   absl::Status Finish();
 
  private:
+  // From `word` of a piece's `words` on, steps over words that are no part of a phrase and stand at
+  // no wanted position. Returns the first word that it did not step over.
+  size_t PassWords(size_t word, size_t words);
   void BeginToken(Entry type, uint64_t at, const WalkPiece& piece, size_t word);
   void EndToken(const WalkPiece& piece, size_t last_word, bool goes_on);
   std::string Spelling(const WalkPiece& piece, size_t last_word) const;

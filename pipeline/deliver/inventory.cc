@@ -7,6 +7,8 @@
 
 #include "absl/strings/str_cat.h"
 #include "base/json.h"
+#include "base/parallel_sort.h"
+#include "base/status.h"
 
 namespace phraseweld {
 namespace {
@@ -86,7 +88,8 @@ void AppendRow(const PhraseRecord& phrase, ScoreTexts* scores, std::string* out)
 
 }  // namespace
 
-void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
+absl::Status SortInventory(Lanes& lanes, const TypeTable& types,
+                           std::vector<PhraseRecord>* phrases) {
   // Most pairs are told apart by what lies side by side here.
   struct Key {
     uint64_t made = 0;
@@ -103,7 +106,7 @@ void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
     keys.push_back(
         {phrase.occurrences + phrase.inside_longer, text, static_cast<uint32_t>(keys.size())});
   }
-  std::sort(keys.begin(), keys.end(), [&](const Key& key_a, const Key& key_b) {
+  const auto before = [&](const Key& key_a, const Key& key_b) {
     if (key_a.made != key_b.made) return key_a.made > key_b.made;
     if (key_a.text != key_b.text) return key_a.text < key_b.text;
     const PhraseRecord &a = (*phrases)[key_a.phrase], &b = (*phrases)[key_b.phrase];
@@ -114,11 +117,13 @@ void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases) {
     return std::lexicographical_compare(
         words_a.begin(), words_a.end(), words_b.begin(), words_b.end(),
         [&](uint32_t x, uint32_t y) { return types.form(x) < types.form(y); });
-  });
+  };
+  PW_RETURN_IF_ERROR(SortInLanes(lanes, &keys, before));
   std::vector<PhraseRecord> sorted;
   sorted.reserve(keys.size());
   for (const Key& key : keys) sorted.push_back(std::move((*phrases)[key.phrase]));
   *phrases = std::move(sorted);
+  return absl::OkStatus();
 }
 
 void AppendInventory(const PhraseRecord& phrase, const InventoryContext& context, std::string* line,

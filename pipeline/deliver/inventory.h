@@ -5,6 +5,7 @@
 #include <string>
 #include <vector>
 
+#include "base/parallel.h"
 #include "base/records.h"
 #include "base/types.h"
 
@@ -20,7 +21,8 @@ struct InventoryContext {
 
 // Sorts into the inventory's order: occurrences + inside_longer, largest first, then the text in
 // byte order, then the forms of its words one by one.
-void SortInventory(const TypeTable& types, std::vector<PhraseRecord>* phrases);
+absl::Status SortInventory(Lanes& lanes, const TypeTable& types,
+                           std::vector<PhraseRecord>* phrases);
 
 // Appends the phrase's line of inventory.jsonl and its row of inventory.tsv (which has a header),
 // each with its line feed. Phrases do not depend on each other, so they may go side by side.

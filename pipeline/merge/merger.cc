@@ -165,11 +165,11 @@ void JoinToken(Entry* stream, uint64_t left_at, uint64_t right_at, uint32_t phra
   stream[left_at] = phrase;
 }
 
-void Merger::Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
-                   const OnSlotChange& on_change) const {
+void Merger::Merge(const SlotIndex& index, Entry* stream, uint64_t begin, uint64_t end,
+                   std::vector<uint64_t>* joined, const OnSlotChange& on_change) const {
   Chains chains(Joiner(stream, begin, end, rules_, accepted_, word_types_, on_change), joined);
   ScanListedSlots(
-      stream, begin, end, rules_, index_,
+      stream, begin, end, rules_, index,
       [&](uint32_t rank, const Slot&, uint64_t left_at, uint64_t right_at) {
         chains.Add({left_at, right_at, rank});
       },
@@ -181,7 +181,18 @@ void Merger::MergeFound(Entry* stream, uint64_t begin, uint64_t end,
                         const std::vector<FoundSlot>& found, const std::vector<uint32_t>& ranks,
                         std::vector<uint64_t>* joined, const OnSlotChange& on_change) const {
   Chains chains(Joiner(stream, begin, end, rules_, accepted_, word_types_, on_change), joined);
-  for (const FoundSlot& slot : found) {
+  // What a slot will want of tables that lie in no cache is asked for while others are joined.
+  constexpr size_t kRankAhead = 32, kAcceptedAhead = 16;
+  for (size_t i = 0; i < found.size(); ++i) {
+    if (i + kRankAhead < found.size()) __builtin_prefetch(&ranks[found[i + kRankAhead].place]);
+    if (i + kAcceptedAhead < found.size()) {
+      const uint32_t next = ranks[found[i + kAcceptedAhead].place];
+      if (next != SlotIndex::kAbsent) {
+        __builtin_prefetch(&accepted_[next]);
+        __builtin_prefetch(&(*joined)[next], 1);
+      }
+    }
+    const FoundSlot& slot = found[i];
     const uint32_t rank = ranks[slot.place];
     if (rank == SlotIndex::kAbsent) continue;
     chains.Add({slot.left_at, slot.left_at + slot.reach, rank});

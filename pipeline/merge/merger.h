@@ -32,15 +32,15 @@ using OnSlotChange = std::function<void(const Slot& before, const Slot& after)>;
 // is never longer than the number of different ranks.
 class Merger {
  public:
-  // `accepted`: in rank order. `index`: its slots at the same places. `word_types`: as TypeTable's.
-  Merger(const SlotRules& rules, const std::vector<AcceptedSlot>& accepted, const SlotIndex& index,
-         uint32_t word_types)
-      : rules_(rules), accepted_(accepted), index_(index), word_types_(word_types) {}
+  // `accepted`: in rank order. `word_types`: as TypeTable's.
+  Merger(const SlotRules& rules, const std::vector<AcceptedSlot>& accepted, uint32_t word_types)
+      : rules_(rules), accepted_(accepted), word_types_(word_types) {}
 
-  // Merges in stream[begin, end), which begins and ends with a run. Adds to (*joined)[rank]. Calls
-  // on_change, where given, for every slot beside a merge; the merged ones are not reported.
-  void Merge(Entry* stream, uint64_t begin, uint64_t end, std::vector<uint64_t>* joined,
-             const OnSlotChange& on_change) const;
+  // Merges in stream[begin, end), which begins and ends with a run. `index`: the accepted slots by
+  // their ranks. Adds to (*joined)[rank]. Calls on_change, where given, for every slot beside a
+  // merge; the merged ones are not reported.
+  void Merge(const SlotIndex& index, Entry* stream, uint64_t begin, uint64_t end,
+             std::vector<uint64_t>* joined, const OnSlotChange& on_change) const;
 
   // The same without a scan: `found` holds, in order, every slot of the stretch that was accepted,
   // and may hold others. `ranks` gives the rank of a place; SlotIndex::kAbsent is an other.
@@ -51,7 +51,6 @@ class Merger {
  private:
   const SlotRules& rules_;
   const std::vector<AcceptedSlot>& accepted_;
-  const SlotIndex& index_;
   uint32_t word_types_;
 };
 

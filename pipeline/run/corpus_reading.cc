@@ -43,6 +43,7 @@ void EncodeBlock(const Block& block, Encoder* encoder, std::vector<Entry>* entri
     }
     if (document.ends) entries->push_back(kDocumentEnd);
   }
+  encoder->Settle(entries);
 }
 
 // Turns provisional ids into final ones and counts the tokens of each type.

@@ -51,8 +51,9 @@ class PassLoop {
   absl::StatusOr<std::unique_ptr<SlotCounter>> NewCounter(const char* purpose);
   absl::StatusOr<Choice> Choose(const PassOptions& options, uint64_t tokens);
   absl::Status FillDocuments(std::vector<Candidate>* pending);
-  std::vector<uint32_t> RanksOfPlaces(const SlotIndex& accepted) const;
-  absl::Status MergeAccepted(PassRecord* record, bool count_changes);
+  // `ranks`: of the accepted candidates, by their places.
+  absl::Status MergeAccepted(PassRecord* record, const std::vector<uint32_t>& ranks,
+                             bool count_changes);
   absl::Status PhrasesFitMemory(size_t accepted);
   void Adjust(uint32_t type, uint64_t more, uint64_t less);
   void BeginStage(const char* name) {
@@ -86,10 +87,10 @@ class PassLoop {
   SlotRules slot_rules_;
   PhraseRules phrase_rules_;
   std::unique_ptr<SlotCounter> counter_;
-  // Where the slots of the candidates stand, a list a chunk of the stream, and the candidates of
-  // the places; the lists are empty where they would take too much memory.
+  // Where the slots of the candidates stand, a list a chunk of the stream, none where that would
+  // take too much memory; how many candidates there are.
   std::vector<std::vector<FoundSlot>> found_;
-  std::vector<Slot> found_places_;
+  size_t candidates_ = 0;
   uint64_t tokens_ = 0, types_ = 0;
   uint64_t phrase_bytes_ = 0;
   int number_ = 0;
@@ -240,15 +241,12 @@ absl::Status PassLoop::CountAll(SlotCounter* counter) {
 }
 
 absl::Status PassLoop::FillDocuments(std::vector<Candidate>* pending) {
+  candidates_ = pending->size();
   if (pending->empty()) return absl::OkStatus();
   const SlotIndex index(pending->size(), results_.types.size(), slot_rules_.codes,
                         [&](size_t i) -> const Slot& { return (*pending)[i].slot; });
-  found_places_.clear();
   uint64_t slots = 0;
-  for (const Candidate& candidate : *pending) {
-    found_places_.push_back(candidate.slot);
-    slots += candidate.table.n;
-  }
+  for (const Candidate& candidate : *pending) slots += candidate.table.n;
   found_.clear();
   const bool keep = slots * sizeof(FoundSlot) <= plan_.found_bytes;
   PW_ASSIGN_OR_RETURN(SlotPlaces places,
@@ -257,6 +255,7 @@ absl::Status PassLoop::FillDocuments(std::vector<Candidate>* pending) {
   for (size_t i = 0; i < pending->size(); ++i) {
     (*pending)[i].table.documents = places.documents[i];
     (*pending)[i].first = places.first[i];
+    (*pending)[i].place = static_cast<uint32_t>(i);
   }
   return absl::OkStatus();
 }
@@ -274,20 +273,13 @@ absl::StatusOr<Choice> PassLoop::Choose(const PassOptions& options, uint64_t tok
     std::vector<Candidate> pending = chooser.Pending();
     BeginStage("documents");
     PW_RETURN_IF_ERROR(FillDocuments(&pending));
-    if (std::optional<Choice> choice = chooser.Choose(std::move(pending))) {
-      return *std::move(choice);
-    }
+    PW_ASSIGN_OR_RETURN(std::optional<Choice> choice, chooser.Choose(lanes_, std::move(pending)));
+    if (choice) return *std::move(choice);
   }
 }
 
-std::vector<uint32_t> PassLoop::RanksOfPlaces(const SlotIndex& accepted) const {
-  std::vector<uint32_t> ranks;
-  ranks.reserve(found_places_.size());
-  for (const Slot& slot : found_places_) ranks.push_back(accepted.Find(slot));
-  return ranks;
-}
-
-absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
+absl::Status PassLoop::MergeAccepted(PassRecord* record, const std::vector<uint32_t>& ranks,
+                                     bool count_changes) {
   BeginStage("merge");
   std::vector<AcceptedSlot> accepted;
   accepted.reserve(record->accepted.size());
@@ -301,12 +293,13 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
                      " makes more phrases than a run can tell apart; a higher "
                      "gate or a `take` keeps them fewer"));
   }
-  const SlotIndex index(accepted.size(), results_.types.size(), slot_rules_.codes,
+  // Only a scan needs it.
+  const SlotIndex index(found_.empty() ? accepted.size() : 0, results_.types.size(),
+                        slot_rules_.codes,
                         [&](size_t i) -> const Slot& { return accepted[i].slot; });
-  const Merger merger(slot_rules_, accepted, index, results_.types.word_types());
+  const Merger merger(slot_rules_, accepted, results_.types.word_types());
   std::vector<std::vector<uint64_t>> joined(static_cast<size_t>(lanes_.lanes()),
                                             std::vector<uint64_t>(accepted.size(), 0));
-  const std::vector<uint32_t> ranks = RanksOfPlaces(index);
   PW_RETURN_IF_ERROR(ForChunks([&](int lane, size_t chunk, uint64_t begin, uint64_t end) {
     OnSlotChange on_change;
     if (count_changes) {
@@ -317,7 +310,7 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, bool count_changes) {
     std::vector<uint64_t>* const counts = &joined[static_cast<size_t>(lane)];
     Entry* const entries = corpus_.stream.entries;
     if (found_.empty()) {
-      merger.Merge(entries, begin, end, counts, on_change);
+      merger.Merge(index, entries, begin, end, counts, on_change);
     } else {
       merger.MergeFound(entries, begin, end, found_[chunk], ranks, counts, on_change);
       std::vector<FoundSlot>().swap(found_[chunk]);
@@ -395,9 +388,13 @@ absl::StatusOr<bool> PassLoop::RunPass(const PassOptions& options, bool is_last)
   for (const Candidate& candidate : choice.near_misses) {
     record.near_misses.push_back(record_of(candidate));
   }
+  std::vector<uint32_t> ranks(candidates_, SlotIndex::kAbsent);
+  for (size_t rank = 0; rank < choice.accepted.size(); ++rank) {
+    ranks[choice.accepted[rank].place] = static_cast<uint32_t>(rank);
+  }
   const bool any = !record.accepted.empty();
   PW_RETURN_IF_ERROR(PhrasesFitMemory(record.accepted.size()));
-  if (any) PW_RETURN_IF_ERROR(MergeAccepted(&record, !is_last));
+  if (any) PW_RETURN_IF_ERROR(MergeAccepted(&record, ranks, !is_last));
   timings_->End();
   record.tokens_out = tokens_;
   PW_RETURN_IF_ERROR(CheckBalance(record, results_.codes));

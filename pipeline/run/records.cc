@@ -111,7 +111,7 @@ absl::StatusOr<std::vector<PhraseRecord>> Inventory(ThreadLanes& lanes, const Pa
   for (PhraseRecord& phrase : phrases) {
     if (!phrase.made_of.empty()) made.push_back(std::move(phrase));
   }
-  SortInventory(types, &made);
+  PW_RETURN_IF_ERROR(SortInventory(lanes, types, &made));
   return made;
 }
 

@@ -203,8 +203,8 @@ ReplayedPass Replayer::CarryOut(const RunPass& pass, Margins margins,
   std::vector<uint32_t> right_types;
   for (const Seen& slot : seen) right_types.push_back(entries_[slot.right_at]);
   std::vector<uint64_t> joined(accepted.size(), 0);
-  Merger(rules_, accepted, index, types_.word_types())
-      .Merge(entries_.data(), 0, entries_.size(), &joined, [](const Slot&, const Slot&) {});
+  Merger(rules_, accepted, types_.word_types())
+      .Merge(index, entries_.data(), 0, entries_.size(), &joined, [](const Slot&, const Slot&) {});
   std::vector<std::map<std::string, uint64_t>> yielded_to(watched.size());
   for (size_t i = 0; i < seen.size(); ++i) {
     const Seen& slot = seen[i];

@@ -5,6 +5,8 @@
 #include <string>
 #include <utility>
 
+#include "base/parallel_sort.h"
+#include "base/status.h"
 #include "score/measures.h"
 
 namespace phraseweld {
@@ -139,9 +141,58 @@ std::vector<Candidate> Chooser::Pending() {
   return pending;
 }
 
-std::optional<Choice> Chooser::Choose(std::vector<Candidate> pending) const {
-  Choice choice;
-  for (Candidate& candidate : pending) {
+// Sorts places in `pending` by the ranks of the candidates there.
+absl::Status Chooser::SortByRank(Lanes& lanes, const std::vector<Candidate>& pending,
+                                 std::vector<uint32_t>* places) const {
+  // Score and n lie side by side here; what they leave tied is sorted by texts that are made once.
+  struct Key {
+    double score = 0;
+    uint64_t n = 0;
+    uint32_t place = 0;
+    bool TiedWith(const Key& other) const { return score == other.score && n == other.n; }
+  };
+  std::vector<Key> keys;
+  keys.reserve(places->size());
+  for (const uint32_t place : *places) {
+    keys.push_back({pending[place].score, pending[place].table.n, place});
+  }
+  PW_RETURN_IF_ERROR(SortInLanes(lanes, &keys, [](const Key& a, const Key& b) {
+    if (a.score != b.score) return a.score > b.score;
+    return a.n != b.n ? a.n > b.n : a.place < b.place;
+  }));
+  for (size_t i = 0; i < keys.size(); ++i) (*places)[i] = keys[i].place;
+  std::vector<std::pair<size_t, size_t>> ties;
+  for (size_t begin = 0, end = 0; begin < keys.size(); begin = end) {
+    for (end = begin + 1; end < keys.size() && keys[end].TiedWith(keys[begin]);) ++end;
+    if (end - begin > 1) ties.emplace_back(begin, end);
+  }
+  struct Text {
+    std::string text;
+    uint32_t place = 0;
+  };
+  return lanes.ForEach(ties.size(), [&](int, size_t tie) {
+    const auto [begin, end] = ties[tie];
+    std::vector<Text> texts;
+    texts.reserve(end - begin);
+    for (size_t i = begin; i < end; ++i) {
+      const uint32_t place = (*places)[i];
+      texts.push_back(
+          {rules_.types->Text(rules_.types->SlotWords(pending[place].slot, *rules_.codes)), place});
+    }
+    std::sort(texts.begin(), texts.end(), [&](const Text& a, const Text& b) {
+      if (const int by_text = a.text.compare(b.text); by_text != 0) return by_text < 0;
+      return order_(pending[a.place], pending[b.place]);
+    });
+    for (size_t i = begin; i < end; ++i) (*places)[i] = texts[i - begin].place;
+    return absl::OkStatus();
+  });
+}
+
+absl::StatusOr<std::optional<Choice>> Chooser::Choose(Lanes& lanes,
+                                                      std::vector<Candidate> pending) const {
+  std::vector<uint32_t> accepted, near_misses;
+  for (size_t place = 0; place < pending.size(); ++place) {
+    Candidate& candidate = pending[place];
     int failed = candidate.failed ? 1 : 0;
     for (const Gate& gate : pass_.accept) {
       if (!IsLate(gate.quantity)) continue;
@@ -150,19 +201,23 @@ std::optional<Choice> Chooser::Choose(std::vector<Candidate> pending) const {
       candidate.failed = gate.quantity;
     }
     if (ranks_late_) candidate.score = Score(pass_.rank_by, candidate.table);
-    if (failed == 0) choice.accepted.push_back(candidate);
-    if (failed == 1) choice.near_misses.push_back(candidate);
+    if (failed == 0) accepted.push_back(static_cast<uint32_t>(place));
+    if (failed == 1) near_misses.push_back(static_cast<uint32_t>(place));
   }
-  std::sort(choice.accepted.begin(), choice.accepted.end(), order_);
-  if (pass_.take && choice.accepted.size() > *pass_.take) choice.accepted.resize(*pass_.take);
-  const size_t near = std::min(choice.near_misses.size(), kMostNearMisses);
-  std::partial_sort(choice.near_misses.begin(),
-                    choice.near_misses.begin() + static_cast<ptrdiff_t>(near),
-                    choice.near_misses.end(), order_);
-  choice.near_misses.resize(near);
+  PW_RETURN_IF_ERROR(SortByRank(lanes, pending, &accepted));
+  if (pass_.take && accepted.size() > *pass_.take) accepted.resize(*pass_.take);
+  const size_t near = std::min(near_misses.size(), kMostNearMisses);
+  std::partial_sort(near_misses.begin(), near_misses.begin() + static_cast<ptrdiff_t>(near),
+                    near_misses.end(),
+                    [&](uint32_t a, uint32_t b) { return order_(pending[a], pending[b]); });
+  near_misses.resize(near);
+  Choice choice;
+  choice.accepted.reserve(accepted.size());
+  for (const uint32_t place : accepted) choice.accepted.push_back(pending[place]);
+  for (const uint32_t place : near_misses) choice.near_misses.push_back(pending[place]);
   if (bound_ &&
       (choice.near_misses.size() < kMostNearMisses || order_(*bound_, choice.near_misses.back()))) {
-    return std::nullopt;
+    return std::optional<Choice>();
   }
   choice.never_used.resize(lanes_.front().never_used.size());
   for (const Lane& lane : lanes_) {
@@ -170,7 +225,7 @@ std::optional<Choice> Chooser::Choose(std::vector<Candidate> pending) const {
       if (lane.never_used[i]) choice.never_used[i] = true;
     }
   }
-  return choice;
+  return std::optional<Choice>(std::move(choice));
 }
 
 }  // namespace phraseweld

@@ -6,7 +6,9 @@
 #include <vector>
 
 #include "absl/container/flat_hash_map.h"
+#include "absl/status/statusor.h"
 #include "base/job.h"
+#include "base/parallel.h"
 #include "base/slots.h"
 #include "base/table.h"
 #include "base/types.h"
@@ -33,6 +35,7 @@ struct Candidate {
   double score = 0;                // of rank_by
   std::optional<Quantity> failed;  // the one gate that turned it away; not known to be final yet
   uint64_t first = 0;              // stream position of its first slot
+  uint32_t place = 0;              // in the caller's list of candidates
 };
 
 // The one total order among slot types: score, n, text, left side's text, bridge's text, and then
@@ -73,7 +76,7 @@ class Chooser {
   void Consider(int lane, const Slot& slot, SlotTable table);
   std::vector<Candidate> Pending();
   // nullopt: near misses may be missing.
-  std::optional<Choice> Choose(std::vector<Candidate> pending) const;
+  absl::StatusOr<std::optional<Choice>> Choose(Lanes& lanes, std::vector<Candidate> pending) const;
 
  private:
   struct Lane {
@@ -86,6 +89,8 @@ class Chooser {
     return quantity == Quantity::kDocuments || quantity == Quantity::kBurst;
   }
   void Trim(Lane* lane);
+  absl::Status SortByRank(Lanes& lanes, const std::vector<Candidate>& pending,
+                          std::vector<uint32_t>* places) const;
 
   const PassOptions& pass_;
   const PhraseRules& rules_;

@@ -1,6 +1,9 @@
 #include <algorithm>
 #include <array>
 #include <cstring>
+#include <string>
+#include <string_view>
+#include <vector>
 
 #include "words/surface_cache.h"
 #include "words/vocabulary.h"
@@ -47,10 +50,15 @@ class Encoder::Impl {
           out += IsBreak(text, last_end, word.begin) ? 1 : 0;
           last_end = word.end;
           const uint64_t word_place = first_place + static_cast<uint64_t>(out - made_.data());
-          *out++ = IdOf(text, word, keys_[i - first], word_place);
+          const uint32_t id = IdOf(text, word, keys_[i - first]);
+          if (id == kBreak) [[unlikely]] {
+            Note(text, word, keys_[i - first], word_place, word_place - place);
+          }
+          *out++ = id;
         }
       }
       entries->insert(entries->end(), made_.data(), out);
+      if (unknown_.size() >= kMostUnknown || bytes_.size() >= kMostBytes) Settle(entries);
     }
     const auto size = static_cast<uint32_t>(text.size());
     if (more_follows && last_end < size && IsBreak(text, last_end, size)) {
@@ -58,7 +66,48 @@ class Encoder::Impl {
     }
   }
 
+  // A thread's places ascend, so a word that the cache knows needs no second look: its place was
+  // smaller when it came in.
+  void Settle(std::vector<Entry>* entries) {
+    sightings_.clear();
+    const std::string_view bytes = bytes_;
+    for (const Unknown& unknown : unknown_) {
+      const size_t begin = unknown.begin + unknown.surface_size;
+      sightings_.push_back(
+          {bytes.substr(begin, unknown.end - begin), unknown.place, unknown.number});
+    }
+    vocabulary_->Intern(absl::MakeSpan(sightings_));
+    for (size_t i = 0; i < unknown_.size(); ++i) {
+      const Unknown& unknown = unknown_[i];
+      (*entries)[unknown.at] = sightings_[i].id;
+      // The same word may have come several times before it was known.
+      if (unknown.surface_size <= ShortWordCache::kMostBytes) {
+        if (short_words_.Find(unknown.key) == kBreak) {
+          short_words_.Add(unknown.key, sightings_[i].id);
+        }
+      } else if (unknown.surface_size <= LongWordCache::kMostBytes) {
+        long_words_.Add(bytes.substr(unknown.begin, unknown.surface_size), sightings_[i].id);
+      }
+    }
+    unknown_.clear();
+    bytes_.clear();
+  }
+
  private:
+  // A word that the caches do not know: its bytes in the text and then those of its form are in
+  // bytes_[begin, end).
+  struct Unknown {
+    ShortWordCache::Key key;
+    uint64_t place = 0;
+    uint64_t at = 0;  // in the entries
+    size_t begin = 0, end = 0;
+    size_t surface_size = 0;
+    bool number = false;
+  };
+  // The vocabulary is asked about so many at once: memory answers many questions side by side.
+  static constexpr size_t kMostUnknown = 1024;
+  static constexpr size_t kMostBytes = size_t{1} << 16;
+
   static constexpr uint32_t kNoWordYet = 0xFFFFFFFFu;
   // Keys are made for so many words before the first is looked up: time for memory to answer.
   static constexpr size_t kGroup = 64;
@@ -82,32 +131,26 @@ class Encoder::Impl {
     return !GapIsOpen(text.substr(last_end, size), options_.join_hyphens);
   }
 
-  uint32_t IdOf(std::string_view text, const WordSpan& word, ShortWordCache::Key key,
-                uint64_t place) {
+  // The id, or kBreak where neither cache knows it.
+  uint32_t IdOf(std::string_view text, const WordSpan& word, ShortWordCache::Key key) {
     const uint32_t size = word.end - word.begin;
-    if (size <= ShortWordCache::kMostBytes) [[likely]] {
-      uint32_t id = short_words_.Find(key);
-      if (id == kBreak) [[unlikely]] {
-        id = Intern(text, word, place);
-        short_words_.Add(key, id);
-      }
-      return id;
-    }
-    if (size > LongWordCache::kMostBytes) return Intern(text, word, place);
-    const std::string_view surface = text.substr(word.begin, size);
-    uint32_t id = long_words_.Find(surface);
-    if (id == kBreak) {
-      id = Intern(text, word, place);
-      long_words_.Add(surface, id);
-    }
-    return id;
+    if (size <= ShortWordCache::kMostBytes) [[likely]]
+      return short_words_.Find(key);
+    if (size > LongWordCache::kMostBytes) return kBreak;
+    return long_words_.Find(text.substr(word.begin, size));
   }
 
-  // A thread's places ascend, so a word that the cache knows needs no second look: its place was
-  // smaller when it came in.
-  uint32_t Intern(std::string_view text, const WordSpan& word, uint64_t place) {
-    return vocabulary_->Intern(folder_.Form(text.substr(word.begin, word.end - word.begin)), place,
-                               word.number != 0);
+  // Keeps a word for Settle(); it will be at entries[at].
+  void Note(std::string_view text, const WordSpan& word, ShortWordCache::Key key, uint64_t place,
+            uint64_t at) {
+    const std::string_view surface = text.substr(word.begin, word.end - word.begin);
+    Unknown unknown{key, place, at, bytes_.size()};
+    unknown.surface_size = surface.size();
+    unknown.number = word.number != 0;
+    bytes_ += surface;
+    bytes_ += folder_.Form(surface);
+    unknown.end = bytes_.size();
+    unknown_.push_back(unknown);
   }
 
   const WordOptions options_;
@@ -120,6 +163,9 @@ class Encoder::Impl {
   std::array<WordSpan, kWords> words_;
   std::array<Entry, 2 * kWords> made_;
   std::array<ShortWordCache::Key, kGroup> keys_;
+  std::vector<Unknown> unknown_;
+  std::string bytes_;
+  std::vector<Vocabulary::Sighting> sightings_;
 };
 
 Encoder::Encoder(const WordOptions& options, Vocabulary* vocabulary, SplitPath path)
@@ -131,5 +177,7 @@ void Encoder::Encode(std::string_view text, bool more_follows, uint64_t place,
                      std::vector<Entry>* entries) {
   impl_->Encode(text, more_follows, place, entries);
 }
+
+void Encoder::Settle(std::vector<Entry>* entries) { impl_->Settle(entries); }
 
 }  // namespace phraseweld

@@ -1,5 +1,6 @@
 #include "words/form_shard.h"
 
+#include <array>
 #include <cstring>
 
 namespace phraseweld {
@@ -36,9 +37,24 @@ uint32_t FormShard::Find(std::string_view form, uint64_t hash) const {
   return kNone;
 }
 
+void FormShard::Expect(absl::Span<const uint64_t> hashes) const {
+  if (slots_.empty()) return;
+  const size_t mask = slots_.size() - 1;
+  for (const uint64_t hash : hashes) __builtin_prefetch(&slots_[hash & mask]);
+  // Each finds its form by a slot, a record and the bytes; most of them in the first slot they try.
+  std::array<uint32_t, kMostExpected> likely;
+  size_t found = 0;
+  for (const uint64_t hash : hashes) {
+    const Slot& slot = slots_[hash & mask];
+    if (slot.index == kNone || slot.hash != static_cast<uint32_t>(hash)) continue;
+    likely[found++] = slot.index;
+    __builtin_prefetch(&record(slot.index));
+  }
+  for (size_t i = 0; i < found; ++i) __builtin_prefetch(BytesAt(record(likely[i]).offset));
+}
+
 std::string_view FormShard::form(uint32_t index) const {
-  const uint32_t offset = record(index).offset;
-  const char* at = arena_[offset / kArenaBytes] + offset % kArenaBytes;
+  const char* at = BytesAt(record(index).offset);
   size_t length = 0;
   int shift = 0;
   for (; static_cast<unsigned char>(*at) >= 0x80; ++at, shift += 7) {

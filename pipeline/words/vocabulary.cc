@@ -30,19 +30,29 @@ class Vocabulary::Impl {
  public:
   Impl() : Impl(std::make_index_sequence<kShards>()) {}
 
-  uint32_t Intern(std::string_view form, uint64_t place, bool number) {
-    const uint64_t hash = HashOf(form);
-    const uint32_t number_of_shard = ShardOf(hash);
-    Shard& shard = shards_[number_of_shard];
-    const std::lock_guard<std::mutex> lock(shard.mutex);
-    const uint32_t index = shard.forms.Add(form, hash);
-    if (index == FormShard::kNone) {
-      full_ = true;
-      return 0;
+  void Intern(absl::Span<Sighting> sightings) {
+    // Sorted by shard: one lock, and one wait for memory, for all of a shard.
+    std::array<uint32_t, kShards + 1> ends{};
+    std::vector<uint64_t> hashes;
+    hashes.reserve(sightings.size());
+    for (const Sighting& sighting : sightings) {
+      hashes.push_back(HashOf(sighting.form));
+      ++ends[ShardOf(hashes.back()) + 1];
     }
-    const uint64_t note = place << 1 | (number ? 1u : 0u);
-    if (note < shard.forms.note(index)) shard.forms.set_note(index, note);
-    return index << kShardBits | number_of_shard;
+    for (uint32_t shard = 0; shard < kShards; ++shard) ends[shard + 1] += ends[shard];
+    std::vector<uint32_t> order(sightings.size());
+    std::vector<uint64_t> sorted(sightings.size());
+    std::array<uint32_t, kShards + 1> next = ends;
+    for (uint32_t i = 0; i < sightings.size(); ++i) {
+      const uint32_t at = next[ShardOf(hashes[i])]++;
+      order[at] = i;
+      sorted[at] = hashes[i];
+    }
+    for (uint32_t shard = 0; shard < kShards; ++shard) {
+      InternInShard(shard,
+                    absl::MakeSpan(order).subspan(ends[shard], ends[shard + 1] - ends[shard]),
+                    absl::MakeSpan(sorted).subspan(ends[shard]), sightings);
+    }
   }
 
   absl::StatusOr<HugeVector<uint32_t>> Finish(const std::vector<std::string>& reserved) {
@@ -116,6 +126,29 @@ class Vocabulary::Impl {
   template <size_t... kNumbers>
   explicit Impl(std::index_sequence<kNumbers...>) : shards_{((void)kNumbers, Shard(&pool_))...} {}
 
+  // Interns sightings[i] for each i of `order`; hashes[k] is the hash of the one at order[k].
+  void InternInShard(uint32_t number, absl::Span<const uint32_t> order,
+                     absl::Span<const uint64_t> hashes, absl::Span<Sighting> sightings) {
+    if (order.empty()) return;
+    Shard& shard = shards_[number];
+    const std::lock_guard<std::mutex> lock(shard.mutex);
+    for (size_t k = 0; k < order.size(); ++k) {
+      if (k % FormShard::kMostExpected == 0) {
+        shard.forms.Expect(
+            hashes.subspan(k, std::min<size_t>(FormShard::kMostExpected, order.size() - k)));
+      }
+      Sighting& sighting = sightings[order[k]];
+      const uint32_t index = shard.forms.Add(sighting.form, hashes[k]);
+      if (index == FormShard::kNone) {
+        full_ = true;
+        continue;
+      }
+      const uint64_t note = sighting.place << 1 | (sighting.number ? 1u : 0u);
+      if (note < shard.forms.note(index)) shard.forms.set_note(index, note);
+      sighting.id = index << kShardBits | number;
+    }
+  }
+
   uint64_t Note(uint32_t provisional) const {
     return shards_[provisional % kShards].forms.note(provisional >> kShardBits);
   }
@@ -171,8 +204,12 @@ Vocabulary::Vocabulary() : impl_(std::make_unique<Impl>()) {}
 
 Vocabulary::~Vocabulary() = default;
 
+void Vocabulary::Intern(absl::Span<Sighting> sightings) { impl_->Intern(sightings); }
+
 uint32_t Vocabulary::Intern(std::string_view form, uint64_t place, bool number) {
-  return impl_->Intern(form, place, number);
+  Sighting sighting{form, place, number};
+  impl_->Intern(absl::MakeSpan(&sighting, 1));
+  return sighting.id;
 }
 
 absl::StatusOr<HugeVector<uint32_t>> Vocabulary::Finish(const std::vector<std::string>& reserved) {

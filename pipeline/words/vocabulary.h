@@ -8,6 +8,7 @@
 #include <vector>
 
 #include "absl/status/statusor.h"
+#include "absl/types/span.h"
 #include "base/entry.h"
 #include "base/huge_pages.h"
 #include "words/splitter.h"
@@ -22,8 +23,18 @@ class Vocabulary {
   Vocabulary();
   ~Vocabulary();
 
-  // Thread-safe. Returns the provisional id of `form` and remembers the smallest `place` it was
-  // seen at, and whether the word there was a number.
+  // A word as it was met: its form, where, and whether it was a number there.
+  struct Sighting {
+    std::string_view form;
+    uint64_t place = 0;
+    bool number = false;
+    uint32_t id = 0;
+  };
+
+  // Thread-safe. Fills in the provisional id of each form and remembers the smallest `place` it was
+  // seen at, and whether the word there was a number. Many at once take less time.
+  void Intern(absl::Span<Sighting> sightings);
+  // The same for one; returns its id.
   uint32_t Intern(std::string_view form, uint64_t place, bool number);
 
   // Call once, when no thread interns any more. The final ids: first `reserved` in their order
@@ -59,9 +70,12 @@ class Encoder {
   // `more_follows` (the passage goes on, with a word at its first byte) also kBreak at the end when
   // the gap after the last word is not open. `place` is what Intern() gets for an entry appended at
   // index 0 of `entries`; the one at index i gets place + i. Calls of one thread must have
-  // ascending places.
+  // ascending places. Ids of words that the cache does not know may be missing until Settle().
   void Encode(std::string_view text, bool more_follows, uint64_t place,
               std::vector<Entry>* entries);
+  // Fills in what the calls of Encode() since the last Settle(), all with the same `entries` and
+  // `place`, left open. Nothing may be taken from the front of `entries` in between.
+  void Settle(std::vector<Entry>* entries);
 
  private:
   class Impl;

@@ -27,7 +27,7 @@ void Merge(benchmark::State& state) {
   const Accepted accepted(static_cast<size_t>(state.range(0)));
   const SlotIndex index(accepted.slots.size(), MadeStream::kTypes, Made().rules.codes,
                         [&](size_t i) -> const Slot& { return accepted.slots[i]; });
-  const Merger merger(Made().rules, accepted.list, index, MadeStream::kTypes);
+  const Merger merger(Made().rules, accepted.list, MadeStream::kTypes);
   std::vector<FoundSlot> found;
   ScanListedSlots(
       Made().entries.data(), 0, Made().entries.size(), Made().rules, index,
@@ -48,7 +48,7 @@ void Merge(benchmark::State& state) {
       merger.MergeFound(entries.data(), 0, entries.size(), found, accepted.ranks, &joined,
                         on_change);
     } else {
-      merger.Merge(entries.data(), 0, entries.size(), &joined, on_change);
+      merger.Merge(index, entries.data(), 0, entries.size(), &joined, on_change);
     }
     benchmark::DoNotOptimize(changes);
   }

@@ -4,8 +4,10 @@
 
 #include <array>
 #include <cmath>
+#include <cstdio>
 #include <initializer_list>
 #include <limits>
+#include <random>
 #include <string>
 #include <vector>
 
@@ -173,6 +175,20 @@ TEST(FormatScore, PrintsFixedNotationWithoutTrailingZeros) {
   EXPECT_EQ(FormatScore(1e9), "1000000000");
   EXPECT_EQ(FormatScore(456399.9), "456399.9");
   EXPECT_EQ(FormatScore(12345678.5), "12345678.5");
+}
+
+TEST(FormatScore, SpellsWhatTheCLibraryPrints) {
+  std::mt19937_64 random(20261201);
+  std::uniform_real_distribution<double> exponent(-10, 9);
+  for (int i = 0; i < 200000; ++i) {
+    const double value = (random() % 2 == 0 ? 1 : -1) * std::pow(10, exponent(random));
+    char printed[64];
+    std::snprintf(printed, sizeof(printed), "%.9f", Round9(value));
+    std::string expected = printed;
+    expected.erase(expected.find_last_not_of('0') + 1);
+    if (expected.back() == '.') expected.pop_back();
+    ASSERT_EQ(FormatScore(value), expected) << value;
+  }
 }
 
 TEST(FormatScore, HoldsTheLargestDouble) {

@@ -154,8 +154,10 @@ TEST(EncoderTest, GivesTheFormsAndBreaksOfTheText) {
     // Twice, so that the second time the cache answers.
     std::vector<Entry> entries;
     encoder.Encode(text, false, 0, &entries);
+    encoder.Settle(&entries);
     const size_t once = entries.size();
     encoder.Encode(text, false, 0, &entries);
+    encoder.Settle(&entries);
     ASSERT_EQ(entries.size(), 2 * once);
     const auto finals = vocabulary.Finish({});
     ASSERT_TRUE(finals.ok());
@@ -181,7 +183,9 @@ TEST(EncoderTest, TellsWordsApartThatShareTheirFirstBytes) {
   }
   std::vector<Entry> entries;
   encoder.Encode(text, false, 0, &entries);
+  encoder.Settle(&entries);
   encoder.Encode(text, false, entries.size(), &entries);
+  encoder.Settle(&entries);
   const auto finals = vocabulary.Finish({});
   ASSERT_TRUE(finals.ok());
   ASSERT_EQ(entries.size(), 280u);
@@ -198,6 +202,7 @@ TEST(EncoderTest, PlacesCountFromTheStartOfTheEntries) {
   Encoder encoder({}, &vocabulary);
   std::vector<Entry> entries = {kDocumentEnd, kDocumentEnd};
   encoder.Encode("one, two", false, 100, &entries);
+  encoder.Settle(&entries);
   // "one" stands at place 102, a break at 103, "two" at 104.
   vocabulary.Intern("before one", 101, false);
   vocabulary.Intern("between", 103, false);
@@ -253,6 +258,7 @@ Encoded EncodeInParallel(std::string_view text, size_t thread_count, size_t part
       Encoder encoder({}, &vocabulary);
       for (size_t part = thread; part < parts.size(); part += thread_count) {
         encoder.Encode(parts[part], part + 1 < parts.size(), uint64_t{part} << 32, &entries[part]);
+        encoder.Settle(&entries[part]);
       }
     });
   }
