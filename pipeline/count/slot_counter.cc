@@ -110,8 +110,8 @@ class SlotStore final : public SlotCounter {
   }
 
   void Change(int lane, const Slot& before, const Slot& after) override {
-    removed_->Append(lane, PartitionOf(before.left), packing_.Pack(before));
-    added_->Append(lane, PartitionOf(after.left), packing_.Pack(after));
+    removed_->AppendSoon(lane, PartitionOf(before.left), packing_.Pack(before));
+    added_->AppendSoon(lane, PartitionOf(after.left), packing_.Pack(after));
   }
 
   void Remove(int lane, const Slot& slot, uint64_t times) override {
@@ -124,6 +124,8 @@ class SlotStore final : public SlotCounter {
   absl::Status Update(Lanes& lanes, uint32_t types) override {
     right_of_empty_.resize(types, 0);
     lane_state_.assign(lanes_, LaneState{});
+    added_->Flush();
+    removed_->Flush();
     PW_RETURN_IF_ERROR(lanes.ForEach(tables_.partitions(), [this](int lane, size_t partition) {
       return UpdatePartition(lane, partition);
     }));
@@ -143,6 +145,7 @@ class SlotStore final : public SlotCounter {
     }
     slots_ += static_cast<uint64_t>(slots);
     slot_types_ = distinct;
+    right_changes_->Flush();
     PW_RETURN_IF_ERROR(lanes.ForEach(
         tables_.partitions(), [this](int, size_t partition) { return UpdateMargins(partition); }));
     right_tables_.NextGeneration();
@@ -275,12 +278,16 @@ class SlotStore final : public SlotCounter {
 
   // Passes the changes of a partition on to R and N.
   void ReportMargins(int lane, const std::vector<Delta<Key>>& deltas, LaneState* state) {
+    constexpr size_t kAhead = 24;
     for (size_t i = 0; i < deltas.size();) {
       const Key group = packing_.LeftAndBridge(deltas[i].key);
       const uint64_t bridge = packing_.Unpack(deltas[i].key).bridge;
       int64_t sum = 0;
       for (; i < deltas.size() && packing_.LeftAndBridge(deltas[i].key) == group; ++i) {
         const Delta<Key>& delta = deltas[i];
+        if (i + kAhead < deltas.size()) {
+          __builtin_prefetch(&right_of_empty_[packing_.Unpack(deltas[i + kAhead].key).right], 1);
+        }
         if (delta.change == 0) continue;
         sum += delta.change;
         if (bridge == 0) {
@@ -289,7 +296,7 @@ class SlotStore final : public SlotCounter {
           continue;
         }
         const Key right = packing_.BridgeAndRight(delta.key);
-        right_changes_->Append(lane, MarginPartitionOf(right), {right, delta.change});
+        right_changes_->AppendSoon(lane, MarginPartitionOf(right), {right, delta.change});
       }
       state->slots += sum;
       if (sum != 0) state->bridges[bridge] += sum;

@@ -2,6 +2,7 @@
 #define PHRASEWELD_FILES_SPOOL_H_
 
 #include <algorithm>
+#include <array>
 #include <atomic>
 #include <cstdint>
 #include <cstring>
@@ -28,15 +29,28 @@ class Spool {
         chunk_records_(chunk_records),
         scratch_(scratch),
         heads_(partitions * static_cast<size_t>(lanes)),
-        lists_(partitions) {}
+        lists_(partitions),
+        queues_(static_cast<size_t>(lanes)) {}
 
   void Append(int lane, size_t partition, const Record& record) {
-    Head& head = heads_[static_cast<size_t>(lane) * partitions_ + partition];
-    if (head.used == head.capacity) Grow(&head, partition);
-    head.records[head.used++] = record;
+    Append(&HeadOf(lane, partition), partition, record);
   }
 
-  // All of the below: while no lane appends.
+  // The same, for a loop that waits for memory elsewhere too: records wait in a queue, and where
+  // they go, which lies in no cache, is asked for many at a time.
+  void AppendSoon(int lane, size_t partition, const Record& record) {
+    Queue& queue = queues_[static_cast<size_t>(lane)];
+    queue.partitions[queue.size] = static_cast<uint32_t>(partition);
+    queue.records[queue.size] = record;
+    __builtin_prefetch(&HeadOf(lane, partition));
+    if (++queue.size == kQueue) Empty(lane);
+  }
+
+  // After the last AppendSoon() and before anything of the below; while no lane appends.
+  void Flush() {
+    for (size_t lane = 0; lane < queues_.size(); ++lane) Empty(static_cast<int>(lane));
+  }
+
   uint64_t Size(size_t partition) const {
     uint64_t size = lists_[partition].records;
     for (size_t i = partition; i < heads_.size(); i += partitions_) size += heads_[i].used;
@@ -78,11 +92,38 @@ class Spool {
     size_t used = 0;
     size_t capacity = 0;
   };
+  static constexpr size_t kQueue = 64;
+  struct alignas(64) Queue {
+    std::array<Record, kQueue> records;
+    std::array<uint32_t, kQueue> partitions;
+    size_t size = 0;
+  };
   struct List {
     std::vector<std::unique_ptr<Record[]>> chunks;
     std::vector<uint64_t> offsets;
     uint64_t records = 0;
   };
+
+  Head& HeadOf(int lane, size_t partition) {
+    return heads_[static_cast<size_t>(lane) * partitions_ + partition];
+  }
+
+  void Empty(int lane) {
+    Queue& queue = queues_[static_cast<size_t>(lane)];
+    for (size_t i = 0; i < queue.size; ++i) {
+      const Head& head = HeadOf(lane, queue.partitions[i]);
+      __builtin_prefetch(head.records.get() + head.used, 1);
+    }
+    for (size_t i = 0; i < queue.size; ++i) {
+      Append(lane, queue.partitions[i], queue.records[i]);
+    }
+    queue.size = 0;
+  }
+
+  void Append(Head* head, size_t partition, const Record& record) {
+    if (head->used == head->capacity) Grow(head, partition);
+    head->records[head->used++] = record;
+  }
 
   // A first chunk starts small, so that many thin partitions cost little.
   void Grow(Head* head, size_t partition) {
@@ -123,6 +164,7 @@ class Spool {
   ScratchFile* scratch_;
   std::vector<Head> heads_;
   std::vector<List> lists_;
+  std::vector<Queue> queues_;  // one a lane
   std::atomic<uint64_t> stored_{0};
   mutable std::mutex mutex_;
   absl::Status failure_;
