@@ -17,7 +17,7 @@ run_tests() {
   local folder=$1 out
   shift
   out=$(mktemp)
-  ctest --test-dir "$folder" --output-on-failure --timeout 1200 "$@" | tee "$out"
+  ctest --test-dir "$folder" --output-on-failure --timeout 1200 --parallel 2 "$@" | tee "$out"
   local ok bad
   ok=$(grep -cE '^ *[0-9]+/[0-9]+ Test .*Passed' "$out")
   bad=$(grep -E '^ *[0-9]+/[0-9]+ Test ' "$out" | grep -cvE 'Passed')
@@ -58,7 +58,7 @@ echo "== thread sanitizer"
 build_targets=(words_test agreement_test)
 if build_program build/tsan -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCMAKE_CXX_FLAGS_RELWITHDEBINFO=-O1 \
      -DPHRASEWELD_SANITIZE=thread -DPHRASEWELD_UNITY=ON; then
-  GTEST_FILTER='*IdsDepend*:Vocabulary*:Agreement*' PHRASEWELD_AGREEMENT_ROUNDS=60 \
+  GTEST_FILTER='*IdsDepend*:Vocabulary*:Agreement.*' PHRASEWELD_AGREEMENT_ROUNDS=150 \
     PHRASEWELD_AGREEMENT_SEED=5301 run_tests build/tsan -R '^(words|agreement)$'
 else
   failed=$((failed + 1))
