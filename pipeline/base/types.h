@@ -19,9 +19,14 @@ namespace phraseweld {
 class TypeTable {
  public:
   using FormOf = std::function<std::string_view(uint32_t word)>;
+  // Asks memory for what FormOf will read of these words.
+  using ExpectForms = std::function<void(absl::Span<const uint32_t> words)>;
   TypeTable() = default;
-  TypeTable(uint32_t word_types, FormOf form_of)
-      : word_types_(word_types), form_of_(std::move(form_of)), offsets_{0} {}
+  TypeTable(uint32_t word_types, FormOf form_of, ExpectForms expect_forms = nullptr)
+      : word_types_(word_types),
+        form_of_(std::move(form_of)),
+        expect_forms_(std::move(expect_forms)),
+        offsets_{0} {}
 
   uint32_t word_types() const { return word_types_; }
   uint32_t size() const { return word_types_ + static_cast<uint32_t>(offsets_.size() - 1); }
@@ -50,6 +55,13 @@ class TypeTable {
     return words;
   }
   std::string_view form(uint32_t word) const { return form_of_(word); }
+  // Before many calls of Text(), which would wait for memory one by one.
+  void ExpectTexts(absl::Span<const uint32_t> types) const {
+    if (!expect_forms_) return;
+    std::vector<uint32_t> words;
+    for (const uint32_t type : types) AppendWords(type, &words);
+    expect_forms_(words);
+  }
   std::string Text(absl::Span<const uint32_t> words, std::string_view between = " ") const {
     std::string text;
     for (size_t i = 0; i < words.size(); ++i) {
@@ -72,6 +84,7 @@ class TypeTable {
  private:
   uint32_t word_types_ = 0;
   FormOf form_of_;
+  ExpectForms expect_forms_;
   std::vector<uint32_t> words_;
   std::vector<uint64_t> offsets_ = {0};
   absl::flat_hash_map<uint64_t, uint32_t> first_by_hash_;

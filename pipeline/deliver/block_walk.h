@@ -57,7 +57,7 @@ struct WalkOptions {
   std::string joiner = "_";
   std::string source_joiner = "_";  // the joiner as it stands in the rewritten file
   const TypeTable* types = nullptr;
-  Surfaces* surfaces = nullptr;
+  Surfaces::Counter* surfaces = nullptr;
   const std::vector<uint64_t>* wanted = nullptr;  // stream positions to find, ascending
 };
 

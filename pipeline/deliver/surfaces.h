@@ -1,20 +1,21 @@
 #ifndef PHRASEWELD_DELIVER_SURFACES_H_
 #define PHRASEWELD_DELIVER_SURFACES_H_
 
-#include <array>
+#include <atomic>
 #include <cstdint>
-#include <mutex>
 #include <string>
 #include <string_view>
 #include <vector>
 
-#include "absl/container/flat_hash_map.h"
+#include "absl/status/status.h"
+#include "base/parallel.h"
+#include "base/shared_texts.h"
 #include "base/types.h"
 
 namespace phraseweld {
 
-// Counts the spellings of phrase tokens. Most tokens are spelt like their type's text; those are
-// not counted but are what is left of all its tokens. Thread-safe.
+// The spellings of phrase tokens and how often each occurs. Most tokens are spelt like their type's
+// text; those are not counted but are what is left of all its tokens.
 class Surfaces {
  public:
   // `tokens`: of each type, in the corpus.
@@ -24,21 +25,39 @@ class Surfaces {
   // Whether a word is its own form whatever the job's options: ASCII, and neither a capital letter
   // nor a mark. A token of such words with a blank in every gap is spelt like its text.
   static bool IsPlain(std::string_view word);
-  // For every token that is not spelt like its text, and at will for others.
-  void Count(uint32_t type, std::string_view spelling);
-  // The most frequent spelling (of equals the first in byte order); the type's text where it has no
-  // token. While no thread counts.
-  std::string MostFrequent(uint32_t type) const;
+
+  // What one thread counts with: it passes spellings on many at a time.
+  class Counter {
+   public:
+    explicit Counter(Surfaces* surfaces) : surfaces_(surfaces) {}
+    // For every token that is not spelt like its text, and at will for others.
+    void Count(uint32_t type, std::string_view spelling);
+    // Passes on what is left.
+    void Flush();
+
+   private:
+    Surfaces* const surfaces_;
+    std::string bytes_;
+    std::vector<size_t> ends_;  // of each spelling in bytes_
+  };
+
+  // When every counter was flushed, and before MostFrequent().
+  absl::Status Settle(Lanes& lanes);
+
+  // The most frequent spelling (of equals the first in byte order) of a type whose text is `text`;
+  // that text where it has no token. Any thread.
+  std::string MostFrequent(uint32_t type, const std::string& text) const;
 
  private:
-  static constexpr size_t kShards = 64;
-  struct Shard {
-    std::mutex mutex;
-    absl::flat_hash_map<uint32_t, absl::flat_hash_map<std::string, uint64_t>> spellings;
-  };
   const TypeTable& types_;
   const std::vector<uint64_t>& tokens_;
-  std::array<Shard, kShards> shards_;
+  // A type's four bytes and a spelling; the note is how often it was counted.
+  SharedTexts spellings_;
+  std::atomic<bool> full_ = false;
+  // The ids of the spellings by type: those of a phrase are at [begins_[phrase], begins_[phrase +
+  // 1]).
+  std::vector<uint64_t> ids_;
+  std::vector<uint32_t> begins_;
 };
 
 }  // namespace phraseweld

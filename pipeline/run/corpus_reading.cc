@@ -38,7 +38,7 @@ void EncodeBlock(const Block& block, Encoder* encoder, std::vector<Entry>* entri
         d + 1 < block.documents.size() ? block.documents[d + 1].first_piece : block.pieces.size();
     for (size_t p = first; p < last; ++p) {
       const TextPiece& piece = block.pieces[p];
-      encoder->Encode(piece.text, !piece.ends_passage, place, entries);
+      encoder->EncodeAhead(piece.text, !piece.ends_passage, place, entries);
       if (piece.ends_passage && p + 1 < last) entries->push_back(kPassageEnd);
     }
     if (document.ends) entries->push_back(kDocumentEnd);

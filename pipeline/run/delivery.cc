@@ -20,11 +20,15 @@ struct DeliveryItem {
 
 struct DeliveryWorker {
   DeliveryWorker(const std::vector<InputFile>& inputs, const ReadOptions& options,
-                 const WordOptions& words)
-      : parser(inputs, options), splitter(words) {}
+                 const WordOptions& words, const WalkOptions& walk, Surfaces* surfaces)
+      : parser(inputs, options), splitter(words), walk_options(walk), counter(surfaces) {
+    walk_options.surfaces = &counter;
+  }
   BlockParser parser;
   WordSplitter splitter;
   std::vector<WordSpan> spans;
+  WalkOptions walk_options;
+  Surfaces::Counter counter;
 };
 
 // Every position that the audit will name.
@@ -40,8 +44,7 @@ std::vector<uint64_t> WantedPositions(const PassResults& results) {
   return wanted;
 }
 
-absl::Status WalkBlock(const WalkOptions& options, const EncodedCorpus& corpus,
-                       DeliveryWorker* worker, DeliveryItem* item) {
+absl::Status WalkBlock(const EncodedCorpus& corpus, DeliveryWorker* worker, DeliveryItem* item) {
   const Block& block = item->block;
   if (block.index >= corpus.blocks.size()) {
     return absl::AbortedError("an input grew while the run was reading it; run again");
@@ -50,8 +53,8 @@ absl::Status WalkBlock(const WalkOptions& options, const EncodedCorpus& corpus,
   const uint64_t end = block.index + 1 < corpus.blocks.size() ? corpus.blocks[block.index + 1].begin
                                                               : corpus.stream.size;
   item->output = BlockOutput{};
-  BlockWalk walk(options, corpus.stream.entries, corpus.stream.size, begin, end, block.bytes,
-                 &item->output);
+  BlockWalk walk(worker->walk_options, corpus.stream.entries, corpus.stream.size, begin, end,
+                 block.bytes, &item->output);
   for (size_t d = 0; d < block.documents.size(); ++d) {
     const DocumentPart& document = block.documents[d];
     const size_t last =
@@ -99,6 +102,7 @@ class CorpusWriter {
         corpus_(corpus),
         source_joiner_(std::move(source_joiner)),
         delivery_(delivery),
+        counter_(delivery->surfaces.get()),
         written_(written) {}
 
   absl::Status Begin() {
@@ -128,6 +132,7 @@ class CorpusWriter {
   }
 
   absl::Status End() {
+    counter_.Flush();
     if (spans_ == nullptr) return absl::OkStatus();
     PW_ASSIGN_OR_RETURN(OutputDigest digest, spans_->Finish());
     written_->push_back({"spans.jsonl", digest});
@@ -189,7 +194,7 @@ class CorpusWriter {
   void WriteSurfaces(const BlockOutput& output) {
     if (output.has_carried_in) {
       spelling_ += output.carried_in;
-      if (!output.carries_on) delivery_->surfaces->Count(output.carried_in_type, spelling_);
+      if (!output.carries_on) counter_.Count(output.carried_in_type, spelling_);
     }
     if (output.has_carried_out) spelling_ = output.carried_out;
   }
@@ -219,6 +224,7 @@ class CorpusWriter {
   const EncodedCorpus& corpus_;
   const std::string source_joiner_;
   Delivery* delivery_;
+  Surfaces::Counter counter_;
   std::vector<DeliveredFile>* written_;
   std::unique_ptr<OutputStream> out_, spans_;
   std::unique_ptr<JointsWriter> joints_;
@@ -268,7 +274,6 @@ absl::Status DeliverCorpus(const Job& job, const std::vector<InputFile>& inputs,
     AppendJsonText(&options.source_joiner, job.deliver.joiner);
   }
   options.types = &results.types;
-  options.surfaces = delivery->surfaces.get();
   options.wanted = &delivery->wanted;
 
   const ReadOptions read_options = ReadOptionsOf(job, plan.block_bytes);
@@ -282,17 +287,22 @@ absl::Status DeliverCorpus(const Job& job, const std::vector<InputFile>& inputs,
   steps.work = [&](int lane, DeliveryItem* item) -> absl::Status {
     auto& worker = workers[static_cast<size_t>(lane)];
     if (worker == nullptr) {
-      worker = std::make_unique<DeliveryWorker>(inputs, read_options, WordOptionsOf(job));
+      worker = std::make_unique<DeliveryWorker>(inputs, read_options, WordOptionsOf(job), options,
+                                                delivery->surfaces.get());
     }
     PW_RETURN_IF_ERROR(worker->parser.Parse(&item->block));
-    PW_RETURN_IF_ERROR(WalkBlock(options, corpus, worker.get(), item));
+    PW_RETURN_IF_ERROR(WalkBlock(corpus, worker.get(), item));
     observer.advance(bytes_done.fetch_add(item->block.bytes.size()) + item->block.bytes.size());
     return absl::OkStatus();
   };
   steps.place = [&](DeliveryItem* item) { return writer.Write(*item); };
   PW_RETURN_IF_ERROR(lanes.Pipeline(plan.blocks_in_flight, steps));
   PW_RETURN_IF_ERROR(SameInputs(inputs, corpus.digests, source.digests()));
-  return writer.End();
+  PW_RETURN_IF_ERROR(writer.End());
+  for (const auto& worker : workers) {
+    if (worker != nullptr) worker->counter.Flush();
+  }
+  return delivery->surfaces->Settle(lanes);
 }
 
 }  // namespace phraseweld

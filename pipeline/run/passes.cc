@@ -106,8 +106,9 @@ absl::Status PassLoop::Prepare(uint32_t function_types, std::vector<ResolvedRuli
         "; a smaller bridge or a shorter list will do"));
   }
   results_.codes = BridgeCodes(function_types, job_.words.bridge);
-  results_.types =
-      TypeTable(vocabulary.size(), [&vocabulary](uint32_t word) { return vocabulary.form(word); });
+  results_.types = TypeTable(
+      vocabulary.size(), [&vocabulary](uint32_t word) { return vocabulary.form(word); },
+      [&vocabulary](absl::Span<const uint32_t> words) { vocabulary.Expect(words); });
   results_.frequency = corpus_.frequency;
   results_.rulings = std::move(rulings);
   slot_rules_.codes = results_.codes;

@@ -37,10 +37,11 @@ class RecordFile {
 constexpr size_t kLinesAtOnce = 512;  // a slice that one lane makes
 
 // Makes `count` lines side by side, in `files.size()` files at once, and appends them in order.
-// make(i, texts) appends line i of each file to its text.
-template <typename Make>
+// make(i, texts) appends line i of each file to its text; add_types(i, types) tells of which types
+// it will want the text.
+template <typename AddTypes, typename Make>
 absl::Status AppendLines(ThreadLanes& lanes, size_t count, const std::vector<RecordFile*>& files,
-                         Make&& make) {
+                         const TypeTable& types, AddTypes&& add_types, Make&& make) {
   struct Slice {
     size_t begin = 0;
     std::vector<std::string> texts;
@@ -56,6 +57,9 @@ absl::Status AppendLines(ThreadLanes& lanes, size_t count, const std::vector<Rec
     slice->texts.resize(files.size());
     for (std::string& text : slice->texts) text.clear();
     const size_t end = std::min(count, slice->begin + kLinesAtOnce);
+    std::vector<uint32_t> expected;
+    for (size_t i = slice->begin; i < end; ++i) add_types(i, &expected);
+    types.ExpectTexts(expected);
     for (size_t i = slice->begin; i < end; ++i) make(i, &slice->texts);
     return absl::OkStatus();
   };
@@ -93,6 +97,13 @@ absl::StatusOr<std::vector<PhraseRecord>> Inventory(ThreadLanes& lanes, const Pa
   PW_RETURN_IF_ERROR(
       lanes.ForEach((phrases.size() + kLinesAtOnce - 1) / kLinesAtOnce, [&](int, size_t slice) {
         const size_t end = std::min(phrases.size(), (slice + 1) * kLinesAtOnce);
+        std::vector<uint32_t> expected;
+        for (size_t i = slice * kLinesAtOnce; i < end; ++i) {
+          if (!phrases[i].made_of.empty()) {
+            expected.push_back(types.word_types() + static_cast<uint32_t>(i));
+          }
+        }
+        types.ExpectTexts(expected);
         for (size_t i = slice * kLinesAtOnce; i < end; ++i) {
           PhraseRecord& phrase = phrases[i];
           if (phrase.made_of.empty()) continue;
@@ -102,7 +113,7 @@ absl::StatusOr<std::vector<PhraseRecord>> Inventory(ThreadLanes& lanes, const Pa
           phrase.occurrences = results.frequency[phrase.type];
           phrase.inside_longer = results.made[i] - phrase.occurrences;
           phrase.documents = documents[i];
-          phrase.surface = surfaces.MostFrequent(phrase.type);
+          phrase.surface = surfaces.MostFrequent(phrase.type, phrase.text);
         }
         return absl::OkStatus();
       }));
@@ -138,8 +149,13 @@ absl::StatusOr<std::vector<PhraseRecord>> DeliverRecords(
     PW_RETURN_IF_ERROR(file.Append(PassLogHead(pass, log)));
     const std::vector<Quantity> shown = ShownMeasures(pass.options);
     for (const auto* list : {&pass.accepted, &pass.near_misses}) {
-      PW_RETURN_IF_ERROR(
-          AppendLines(lanes, list->size(), {&file}, [&](size_t i, std::vector<std::string>* texts) {
+      PW_RETURN_IF_ERROR(AppendLines(
+          lanes, list->size(), {&file}, results.types,
+          [&](size_t i, std::vector<uint32_t>* types) {
+            types->push_back((*list)[i].slot.left);
+            types->push_back((*list)[i].slot.right);
+          },
+          [&](size_t i, std::vector<std::string>* texts) {
             AppendSlotLine((*list)[i], i + 1, shown, log, &texts->front());
           }));
     }
@@ -160,7 +176,9 @@ absl::StatusOr<std::vector<PhraseRecord>> DeliverRecords(
   PW_ASSIGN_OR_RETURN(RecordFile rows, RecordFile::Create(folder, "inventory.tsv", files));
   PW_RETURN_IF_ERROR(rows.Append(kInventoryHeader));
   PW_RETURN_IF_ERROR(AppendLines(
-      lanes, phrases.size(), {&lines, &rows}, [&](size_t i, std::vector<std::string>* texts) {
+      lanes, phrases.size(), {&lines, &rows}, results.types,
+      [&](size_t i, std::vector<uint32_t>* types) { types->push_back(phrases[i].type); },
+      [&](size_t i, std::vector<std::string>* texts) {
         AppendInventory(phrases[i], context, &texts->front(), &texts->back());
       }));
   PW_RETURN_IF_ERROR(lines.Finish(written));

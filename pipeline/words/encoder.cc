@@ -31,8 +31,8 @@ class Encoder::Impl {
         stream_(MakeWordStream(options, path)),
         folder_(options) {}
 
-  void Encode(std::string_view text, bool more_follows, uint64_t place,
-              std::vector<Entry>* entries) {
+  void EncodeAhead(std::string_view text, bool more_follows, uint64_t place,
+                   std::vector<Entry>* entries) {
     stream_->Start(text);
     uint32_t last_end = kNoWordYet;
     while (const size_t count = stream_->Next(words_.data(), words_.size())) {
@@ -69,6 +69,7 @@ class Encoder::Impl {
   // A thread's places ascend, so a word that the cache knows needs no second look: its place was
   // smaller when it came in.
   void Settle(std::vector<Entry>* entries) {
+    if (unknown_.empty()) return;
     sightings_.clear();
     const std::string_view bytes = bytes_;
     for (const Unknown& unknown : unknown_) {
@@ -175,7 +176,13 @@ Encoder::~Encoder() = default;
 
 void Encoder::Encode(std::string_view text, bool more_follows, uint64_t place,
                      std::vector<Entry>* entries) {
-  impl_->Encode(text, more_follows, place, entries);
+  impl_->EncodeAhead(text, more_follows, place, entries);
+  impl_->Settle(entries);
+}
+
+void Encoder::EncodeAhead(std::string_view text, bool more_follows, uint64_t place,
+                          std::vector<Entry>* entries) {
+  impl_->EncodeAhead(text, more_follows, place, entries);
 }
 
 void Encoder::Settle(std::vector<Entry>* entries) { impl_->Settle(entries); }

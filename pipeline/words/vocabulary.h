@@ -46,6 +46,9 @@ class Vocabulary {
   // After Finish(). Thread-safe.
   uint32_t size() const;
   std::string_view form(uint32_t id) const;
+  // Asks memory for what form() will read; for many at once that takes less than the waiting for
+  // each.
+  void Expect(absl::Span<const uint32_t> ids) const;
   bool is_number(uint32_t id) const;  // false for a reserved form that never occurred
   // The id of `form`, or kBreak where the vocabulary lacks it.
   uint32_t Find(std::string_view form) const;
@@ -70,11 +73,15 @@ class Encoder {
   // `more_follows` (the passage goes on, with a word at its first byte) also kBreak at the end when
   // the gap after the last word is not open. `place` is what Intern() gets for an entry appended at
   // index 0 of `entries`; the one at index i gets place + i. Calls of one thread must have
-  // ascending places. Ids of words that the cache does not know may be missing until Settle().
+  // ascending places.
   void Encode(std::string_view text, bool more_follows, uint64_t place,
               std::vector<Entry>* entries);
-  // Fills in what the calls of Encode() since the last Settle(), all with the same `entries` and
-  // `place`, left open. Nothing may be taken from the front of `entries` in between.
+
+  // The same in two steps, which take less time for many short texts: EncodeAhead() leaves ids of
+  // words that the cache does not know open, kBreak for the time being, and Settle() fills them in.
+  // Between them all calls have the same `entries` and `place`, and `entries` only grows.
+  void EncodeAhead(std::string_view text, bool more_follows, uint64_t place,
+                   std::vector<Entry>* entries);
   void Settle(std::vector<Entry>* entries);
 
  private:

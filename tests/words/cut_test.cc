@@ -51,7 +51,6 @@ TEST(Cuts, LeaveWordsAndBreaksAsTheyWere) {
     Encoder encoder({}, &vocabulary);
     std::vector<Entry> expected;
     encoder.Encode(text, false, 0, &expected);
-    encoder.Settle(&expected);
     for (size_t at = 1; at < text.size(); ++at) {
       const std::string_view rest = std::string_view(text).substr(at);
       if ((text[at - 1] != ' ' && text[at - 1] != '\n') || !StartsWord(rest)) continue;
@@ -70,7 +69,6 @@ TEST(Cuts, LeaveWordsAndBreaksAsTheyWere) {
       std::vector<Entry> entries;
       encoder.Encode(std::string_view(text).substr(0, at), true, 0, &entries);
       encoder.Encode(rest, false, 0, &entries);
-      encoder.Settle(&entries);
       ASSERT_EQ(entries, expected) << Show(text, whole) << " cut at " << at;
     }
   }
@@ -83,7 +81,6 @@ TEST(Cuts, KeepTheBreakBeforeThem) {
   const auto encode = [&](std::string_view text, bool more_follows) {
     std::vector<Entry> entries;
     encoder.Encode(text, more_follows, 0, &entries);
-    encoder.Settle(&entries);
     return entries;
   };
   const Entry a = encode("a", false)[0];

@@ -9,7 +9,6 @@
 
 #include "absl/hash/hash.h"
 #include "absl/strings/str_cat.h"
-#include "words/form_shard.h"
 #include "words/reference_splitter.h"
 
 namespace phraseweld {
@@ -103,28 +102,6 @@ TEST(VocabularyTest, CostsFortyBytesAFormBesideItsOwnBytes) {
   EXPECT_LT(vocabulary.memory() - empty, bytes + 40 * kForms);
 }
 
-TEST(FormShardTest, RefusesNewFormsWhenFullAndKeepsTheOld) {
-  HugePool pool;
-  FormShard shard(3, &pool);
-  const auto add = [&shard](std::string_view form) {
-    return shard.Add(form, absl::Hash<std::string_view>()(form));
-  };
-  EXPECT_EQ(add("a"), 0u);
-  EXPECT_EQ(add("b"), 1u);
-  EXPECT_EQ(add("c"), 2u);
-  EXPECT_EQ(add("d"), FormShard::kNone);
-  EXPECT_EQ(add("b"), 1u);
-  EXPECT_EQ(shard.form(2), "c");
-}
-
-TEST(FormShardTest, TellsFormsOfOneHashApart) {
-  HugePool pool;
-  FormShard shard(1000, &pool);
-  for (uint32_t i = 0; i < 200; ++i) EXPECT_EQ(shard.Add(absl::StrCat(i), 42), i);
-  for (uint32_t i = 0; i < 200; ++i) EXPECT_EQ(shard.Find(absl::StrCat(i), 42), i);
-  EXPECT_EQ(shard.Find("200", 42), FormShard::kNone);
-}
-
 // What Encode must give, from the reference words, with the forms for ids.
 std::vector<std::string> ReferenceEntries(std::string_view text, const WordOptions& options) {
   WordFolder folder(options);
@@ -154,10 +131,8 @@ TEST(EncoderTest, GivesTheFormsAndBreaksOfTheText) {
     // Twice, so that the second time the cache answers.
     std::vector<Entry> entries;
     encoder.Encode(text, false, 0, &entries);
-    encoder.Settle(&entries);
     const size_t once = entries.size();
     encoder.Encode(text, false, 0, &entries);
-    encoder.Settle(&entries);
     ASSERT_EQ(entries.size(), 2 * once);
     const auto finals = vocabulary.Finish({});
     ASSERT_TRUE(finals.ok());
@@ -183,9 +158,7 @@ TEST(EncoderTest, TellsWordsApartThatShareTheirFirstBytes) {
   }
   std::vector<Entry> entries;
   encoder.Encode(text, false, 0, &entries);
-  encoder.Settle(&entries);
   encoder.Encode(text, false, entries.size(), &entries);
-  encoder.Settle(&entries);
   const auto finals = vocabulary.Finish({});
   ASSERT_TRUE(finals.ok());
   ASSERT_EQ(entries.size(), 280u);
@@ -202,13 +175,29 @@ TEST(EncoderTest, PlacesCountFromTheStartOfTheEntries) {
   Encoder encoder({}, &vocabulary);
   std::vector<Entry> entries = {kDocumentEnd, kDocumentEnd};
   encoder.Encode("one, two", false, 100, &entries);
-  encoder.Settle(&entries);
   // "one" stands at place 102, a break at 103, "two" at 104.
   vocabulary.Intern("before one", 101, false);
   vocabulary.Intern("between", 103, false);
   vocabulary.Intern("after two", 105, false);
   ASSERT_TRUE(vocabulary.Finish({}).ok());
   EXPECT_THAT(Forms(vocabulary), ElementsAre("before one", "one", "between", "two", "after two"));
+}
+
+TEST(EncoderTest, FillsInAheadWhatItLeftOpen) {
+  // Short texts, of which many bring new words and some the same new word several times.
+  std::mt19937_64 random(11);
+  std::vector<std::string> texts;
+  for (int i = 0; i < 20000; ++i) {
+    texts.push_back(absl::StrCat("w", random() % 9000, ", Word", random() % 300, " w", i / 3));
+    if (i % 1000 == 0) texts.back() += " " + std::string(70000, 'y') + absl::StrCat(i);
+  }
+  Vocabulary vocabulary;
+  Encoder plain({}, &vocabulary), ahead({}, &vocabulary);
+  std::vector<Entry> expected, entries;
+  for (const std::string& text : texts) plain.Encode(text, true, 0, &expected);
+  for (const std::string& text : texts) ahead.EncodeAhead(text, true, 0, &entries);
+  ahead.Settle(&entries);
+  EXPECT_EQ(entries, expected);
 }
 
 // Words of a skewed distribution, as in a language, some capitalised, some long, some not ASCII.
@@ -258,7 +247,6 @@ Encoded EncodeInParallel(std::string_view text, size_t thread_count, size_t part
       Encoder encoder({}, &vocabulary);
       for (size_t part = thread; part < parts.size(); part += thread_count) {
         encoder.Encode(parts[part], part + 1 < parts.size(), uint64_t{part} << 32, &entries[part]);
-        encoder.Settle(&entries[part]);
       }
     });
   }

@@ -1,4 +1,4 @@
-#include "words/form_shard.h"
+#include "base/text_shard.h"
 
 #include <array>
 #include <cstring>
@@ -10,10 +10,10 @@ constexpr size_t kLeastSlots = 64;
 
 }  // namespace
 
-uint32_t FormShard::Add(std::string_view form, uint64_t hash) {
-  const uint32_t found = Find(form, hash);
-  if (found != kNone || size_ == most_forms_) return found;
-  const uint32_t offset = Store(form);
+uint32_t TextShard::Add(std::string_view text, uint64_t hash) {
+  const uint32_t found = Find(text, hash);
+  if (found != kNone || size_ == most_texts_) return found;
+  const uint32_t offset = Store(text);
   if (offset == kNone) return kNone;
   if ((uint64_t{size_} + 1) * 8 > slots_.size() * 7) Grow();
   const uint32_t index = size_++;
@@ -25,35 +25,35 @@ uint32_t FormShard::Add(std::string_view form, uint64_t hash) {
   return index;
 }
 
-uint32_t FormShard::Find(std::string_view form, uint64_t hash) const {
+uint32_t TextShard::Find(std::string_view text, uint64_t hash) const {
   if (slots_.empty()) return kNone;
   const auto wanted = static_cast<uint32_t>(hash);
   const size_t mask = slots_.size() - 1;
   for (size_t slot = wanted & mask; slots_[slot].index != kNone; slot = (slot + 1) & mask) {
-    if (slots_[slot].hash == wanted && this->form(slots_[slot].index) == form) {
+    if (slots_[slot].hash == wanted && this->text(slots_[slot].index) == text) {
       return slots_[slot].index;
     }
   }
   return kNone;
 }
 
-void FormShard::Expect(absl::Span<const uint64_t> hashes) const {
+void TextShard::Expect(absl::Span<const uint64_t> hashes) const {
   if (slots_.empty()) return;
   const size_t mask = slots_.size() - 1;
   for (const uint64_t hash : hashes) __builtin_prefetch(&slots_[hash & mask]);
-  // Each finds its form by a slot, a record and the bytes; most of them in the first slot they try.
+  // Each finds its text by a slot, a record and the bytes; most of them in the first slot they try.
   std::array<uint32_t, kMostExpected> likely;
   size_t found = 0;
   for (const uint64_t hash : hashes) {
     const Slot& slot = slots_[hash & mask];
     if (slot.index == kNone || slot.hash != static_cast<uint32_t>(hash)) continue;
     likely[found++] = slot.index;
-    __builtin_prefetch(&record(slot.index));
+    ExpectRecord(slot.index);
   }
-  for (size_t i = 0; i < found; ++i) __builtin_prefetch(BytesAt(record(likely[i]).offset));
+  for (size_t i = 0; i < found; ++i) ExpectText(likely[i]);
 }
 
-std::string_view FormShard::form(uint32_t index) const {
+std::string_view TextShard::text(uint32_t index) const {
   const char* at = BytesAt(record(index).offset);
   size_t length = 0;
   int shift = 0;
@@ -64,18 +64,18 @@ std::string_view FormShard::form(uint32_t index) const {
   return {at, length};
 }
 
-uint64_t FormShard::memory() const {
+uint64_t TextShard::memory() const {
   return slots_.capacity() * sizeof(Slot) + records_.size() * kChunk * sizeof(Record) +
          arena_bytes_ + (records_.capacity() + arena_.capacity()) * sizeof(void*);
 }
 
-uint32_t FormShard::Store(std::string_view form) {
+uint32_t TextShard::Store(std::string_view text) {
   char length[10];
   size_t length_bytes = 0;
-  size_t rest = form.size();
+  size_t rest = text.size();
   for (; rest >= 0x80; rest >>= 7) length[length_bytes++] = static_cast<char>(rest | 0x80);
   length[length_bytes++] = static_cast<char>(rest);
-  const size_t bytes = length_bytes + form.size();
+  const size_t bytes = length_bytes + text.size();
   if (arena_used_ + bytes > kArenaBytes) {
     const size_t blocks = (bytes + kArenaBytes - 1) / kArenaBytes;
     if ((arena_.size() + blocks) * kArenaBytes > kNone) return kNone;
@@ -87,21 +87,21 @@ uint32_t FormShard::Store(std::string_view form) {
   const size_t offset = block * kArenaBytes + arena_used_;
   char* at = arena_[block] + arena_used_;
   std::memcpy(at, length, length_bytes);
-  std::memcpy(at + length_bytes, form.data(), form.size());
+  std::memcpy(at + length_bytes, text.data(), text.size());
   arena_used_ += bytes;
   while (arena_.size() * kArenaBytes < offset + bytes) arena_.push_back(nullptr);
   if (arena_.size() - 1 != block) arena_used_ = kArenaBytes;
   return static_cast<uint32_t>(offset);
 }
 
-void FormShard::Place(Slot entry) {
+void TextShard::Place(Slot entry) {
   const size_t mask = slots_.size() - 1;
   size_t slot = entry.hash & mask;
   while (slots_[slot].index != kNone) slot = (slot + 1) & mask;
   slots_[slot] = entry;
 }
 
-void FormShard::Grow() {
+void TextShard::Grow() {
   HugeVector<Slot> old(slots_.empty() ? kLeastSlots : slots_.size() * 2);
   old.swap(slots_);
   for (const Slot& entry : old) {
