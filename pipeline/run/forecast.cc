@@ -19,6 +19,10 @@ namespace {
 constexpr uint64_t kSampleBytes = uint64_t{16} << 20;
 constexpr uint64_t kRangeBytes = uint64_t{128} << 10;
 constexpr uint64_t kNoLimit = uint64_t{1} << 40;
+// Of text more than so many times as large as the sample, words are counted in an eighth, but in no
+// more than this.
+constexpr double kFarTimes = 8;
+constexpr uint64_t kMostWordSample = uint64_t{256} << 20;
 
 bool IsPacked(std::string_view path) { return path.ends_with(".zst") || path.ends_with(".gz"); }
 
@@ -60,30 +64,43 @@ absl::Status AppendFront(FileSystem& files, const std::string& path, uint64_t mo
   return absl::OkStatus();
 }
 
-// The sample of each input, and how large all text is.
+// A sample of the inputs as files, and how large all text is.
 struct Sample {
-  std::vector<std::string> texts;  // by input; empty where none of it was taken
+  std::vector<std::string> paths;
   uint64_t bytes = 0;
   double all_bytes = 0;
 };
 
-// Takes every range, or with `step` 2 every second one.
+// Takes some `wanted` bytes of text in ranges spread over the inputs, or with `step` 2 every second
+// range of those, and writes them to files in `folder`.
 absl::StatusOr<Sample> TakeSample(const std::vector<InputFile>& inputs,
-                                  const std::vector<uint64_t>& sizes, uint64_t step,
-                                  FileSystem& files) {
+                                  const std::vector<uint64_t>& sizes, uint64_t wanted,
+                                  uint64_t step, const std::string& folder, FileSystem& files) {
+  PW_RETURN_IF_ERROR(files.MakeDirectories(folder));
   uint64_t stored_bytes = 0;
   for (uint64_t size : sizes) stored_bytes += size;
-  const uint64_t ranges = std::max<uint64_t>(1, std::min(kSampleBytes, stored_bytes) / kRangeBytes);
+  const uint64_t ranges = std::max<uint64_t>(1, std::min(wanted, stored_bytes) / kRangeBytes);
   // Ranges begin so far apart in the inputs one after another; touching where all is taken.
   const uint64_t stride = (stored_bytes + ranges - 1) / ranges;
-  const uint64_t length = stored_bytes <= kSampleBytes ? stride : kRangeBytes;
+  const uint64_t length = stored_bytes <= wanted ? stride : kRangeBytes;
   Sample sample;
-  sample.texts.resize(inputs.size());
   uint64_t input_begin = 0;
   for (size_t i = 0; i < inputs.size(); input_begin += sizes[i], ++i) {
     const uint64_t input_end = input_begin + sizes[i];
-    std::string& text = sample.texts[i];
-    uint64_t packed = 0;
+    std::unique_ptr<WriteFile> out;
+    std::string text;
+    uint64_t packed = 0, taken = 0;
+    const auto write = [&]() -> absl::Status {
+      if (text.empty()) return absl::OkStatus();
+      if (out == nullptr) {
+        sample.paths.push_back(Concat(folder, "/", i, ".txt"));
+        PW_ASSIGN_OR_RETURN(out, files.CreateWrite(sample.paths.back()));
+      }
+      taken += text.size();
+      PW_RETURN_IF_ERROR(out->Append(text));
+      text.clear();
+      return absl::OkStatus();
+    };
     for (uint64_t r = input_begin / stride; r < ranges && r * stride < input_end; ++r) {
       if (r % step != 0) continue;
       const uint64_t begin = std::max(input_begin, r * stride);
@@ -94,6 +111,7 @@ absl::StatusOr<Sample> TakeSample(const std::vector<InputFile>& inputs,
       } else {
         PW_RETURN_IF_ERROR(AppendRange(files, inputs[i].path, begin - input_begin,
                                        end - input_begin, sizes[i], &text));
+        PW_RETURN_IF_ERROR(write());
       }
     }
     if (packed > 0) {
@@ -102,10 +120,12 @@ absl::StatusOr<Sample> TakeSample(const std::vector<InputFile>& inputs,
       PW_RETURN_IF_ERROR(AppendFront(files, inputs[i].path, most, &text, &stored));
       sample.all_bytes += static_cast<double>(text.size()) * static_cast<double>(sizes[i]) /
                           static_cast<double>(std::max<uint64_t>(stored, 1));
+      PW_RETURN_IF_ERROR(write());
     } else {
       sample.all_bytes += static_cast<double>(sizes[i]) * (IsPacked(inputs[i].path) ? 4 : 1);
     }
-    sample.bytes += text.size();
+    sample.bytes += taken;
+    if (out != nullptr) PW_RETURN_IF_ERROR(out->Close());
   }
   return sample;
 }
@@ -119,22 +139,12 @@ std::string KindOf(std::string_view path) {
   return std::string(path.substr(0, path.find('/')));
 }
 
-absl::StatusOr<Amounts> TrialRun(Job job, const Sample& sample, const std::string& folder,
+absl::StatusOr<Amounts> TrialRun(Job job, const Sample& sample, const std::string& run_folder,
                                  FileSystem& files, const std::atomic<bool>* stop) {
-  PW_RETURN_IF_ERROR(files.MakeDirectories(folder));
-  job.run_folder = folder + "/run";
-  job.limits.memory = kNoLimit;
+  job.run_folder = run_folder;
   job.debug.recount = false;
-  job.corpus.files.clear();
+  job.corpus.files = sample.paths;
   job.corpus.bad_lines = BadLines::kKeep;
-  for (size_t i = 0; i < sample.texts.size(); ++i) {
-    if (sample.texts[i].empty()) continue;
-    const std::string path = Concat(folder, "/", i, ".txt");
-    PW_ASSIGN_OR_RETURN(const std::unique_ptr<WriteFile> file, files.CreateWrite(path));
-    PW_RETURN_IF_ERROR(file->Append(sample.texts[i]));
-    PW_RETURN_IF_ERROR(file->Close());
-    job.corpus.files.push_back(path);
-  }
   Observer quiet;
   quiet.stop = stop;
   PW_ASSIGN_OR_RETURN(const RunSummary run, RunJob(job, RunControls{}, files, quiet));
@@ -166,6 +176,44 @@ Amounts Extrapolate(const Amounts& half, const Amounts& whole, double halves, do
   return all;
 }
 
+// How many different words there are in so much text.
+struct WordCount {
+  double bytes = 0;
+  double words = 0;
+};
+
+// The words of `bytes` of text by those of three samples of growing size. A vocabulary grows by a
+// power of the size that itself changes slowly with the size: the curve through the three in
+// logarithms, whose bend is held within what text of some kind shows.
+double ExtrapolateWords(const WordCount& small, const WordCount& middle, const WordCount& large,
+                        double bytes) {
+  const auto power = [](const WordCount& a, const WordCount& b) {
+    return std::log(b.words / a.words) / std::log(b.bytes / a.bytes);
+  };
+  const double first = power(small, middle), second = power(middle, large);
+  // Between the middles of the two stretches, and from there to the middle of the one to come.
+  const double known = std::log(large.bytes / small.bytes) / 2;
+  const double ahead = std::log(bytes / middle.bytes) / 2;
+  const double bend = std::clamp((second - first) / known * ahead, -0.1, 0.1);
+  return large.words * std::pow(bytes / large.bytes, std::clamp(second + bend, 0.2, 1.0));
+}
+
+// The different words of a sample, which is only read; nothing where that would take more memory
+// than the job may.
+absl::StatusOr<std::optional<WordCount>> CountWords(Job job, const Sample& sample,
+                                                    const std::string& run_folder,
+                                                    FileSystem& files,
+                                                    const std::atomic<bool>* stop) {
+  job.passes.clear();
+  job.deliver.corpus = CorpusForm::kNone;
+  job.deliver.spans = false;
+  job.deliver.report = false;
+  auto read = TrialRun(job, sample, run_folder, files, stop);
+  if (absl::IsResourceExhausted(read.status())) return std::optional<WordCount>();
+  PW_RETURN_IF_ERROR(read.status());
+  return std::optional<WordCount>({static_cast<double>(sample.bytes), read->at("words")});
+}
+
 }  // namespace
 
 absl::StatusOr<std::optional<Forecast>> ForecastRun(const Job& job,
@@ -176,21 +224,40 @@ absl::StatusOr<std::optional<Forecast>> ForecastRun(const Job& job,
   for (const InputFile& input : inputs) {
     if (input.path == "-") return std::nullopt;
   }
-  PW_ASSIGN_OR_RETURN(const Sample whole_sample, TakeSample(inputs, sizes, 1, files));
-  PW_ASSIGN_OR_RETURN(const Sample half_sample, TakeSample(inputs, sizes, 2, files));
-  if (whole_sample.bytes == 0) return std::nullopt;
   PassingFolder passing(files);
   PW_ASSIGN_OR_RETURN(const std::string folder, passing.Path());
+  const auto take = [&](uint64_t wanted, uint64_t step, const char* name) {
+    return TakeSample(inputs, sizes, wanted, step, Concat(folder, "/", name), files);
+  };
+  Job trial = job;
+  trial.limits.memory = kNoLimit;
+  PW_ASSIGN_OR_RETURN(const Sample whole_sample, take(kSampleBytes, 1, "whole"));
+  PW_ASSIGN_OR_RETURN(const Sample half_sample, take(kSampleBytes, 2, "half"));
+  if (whole_sample.bytes == 0) return std::nullopt;
   PW_ASSIGN_OR_RETURN(const Amounts whole,
-                      TrialRun(job, whole_sample, folder + "/whole", files, observer.stop));
+                      TrialRun(trial, whole_sample, folder + "/run", files, observer.stop));
   Amounts all = whole;
   const double times = whole_sample.all_bytes / static_cast<double>(whole_sample.bytes);
   if (half_sample.bytes > 0 && half_sample.bytes < whole_sample.bytes && times > 1.01) {
     PW_ASSIGN_OR_RETURN(const Amounts half,
-                        TrialRun(job, half_sample, folder + "/half", files, observer.stop));
-    all = Extrapolate(
-        half, whole,
-        static_cast<double>(whole_sample.bytes) / static_cast<double>(half_sample.bytes), times);
+                        TrialRun(trial, half_sample, folder + "/half-run", files, observer.stop));
+    const auto half_bytes = static_cast<double>(half_sample.bytes);
+    const auto whole_bytes = static_cast<double>(whole_sample.bytes);
+    all = Extrapolate(half, whole, whole_bytes / half_bytes, times);
+    // A long way on, the last doubling of a small sample says too little of a vocabulary.
+    if (times > kFarTimes && half.at("words") > 0) {
+      const auto wanted = static_cast<uint64_t>(whole_sample.all_bytes / kFarTimes);
+      PW_ASSIGN_OR_RETURN(const Sample words_sample,
+                          take(std::min(wanted, kMostWordSample), 1, "words"));
+      PW_ASSIGN_OR_RETURN(
+          const std::optional<WordCount> far,
+          CountWords(job, words_sample, folder + "/words-run", files, observer.stop));
+      if (far && far->bytes >= 2 * whole_bytes) {
+        all["words"] =
+            ExtrapolateWords({half_bytes, half.at("words")}, {whole_bytes, whole.at("words")}, *far,
+                             whole_sample.all_bytes);
+      }
+    }
   }
   Forecast forecast;
   forecast.sampled_bytes = whole_sample.bytes;
