@@ -212,8 +212,9 @@ struct ExpectNothing {
 // that is in `index`, in order, and on_document_end(at) for every end of a document. The same slots
 // as ScanSlots() finds, for a fraction of the time where the index is short: entries are first
 // sifted by two bits a type, without a branch that the processor would have to guess. Calls
-// expect(place) some time before on_slot, which may ask for what on_slot is going to read; the
-// entries that on_slot changes must lie before right_at.
+// expect(place) some time before on_slot, which may ask for what on_slot is going to read. Of
+// the stream on_slot may change what stands up to its slot's left token: the rest is yet to be
+// read.
 template <typename OnSlot, typename OnDocumentEnd, typename Expect = ExpectNothing>
 void ScanListedSlots(const Entry* stream, uint64_t begin, uint64_t end, const SlotRules& rules,
                      const SlotIndex& index, OnSlot&& on_slot, OnDocumentEnd&& on_document_end,

@@ -46,12 +46,18 @@ class TypeTable {
     words->insert(words->end(), words_.begin() + static_cast<ptrdiff_t>(offsets_[phrase]),
                   words_.begin() + static_cast<ptrdiff_t>(offsets_[phrase + 1]));
   }
+  void AppendSlotWords(const Slot& slot, const BridgeCodes& codes,
+                       std::vector<uint32_t>* words) const {
+    AppendWords(slot.left, words);
+    if (slot.bridge != 0) {
+      const std::vector<uint32_t> bridge = codes.Words(slot.bridge);
+      words->insert(words->end(), bridge.begin(), bridge.end());
+    }
+    AppendWords(slot.right, words);
+  }
   std::vector<uint32_t> SlotWords(const Slot& slot, const BridgeCodes& codes) const {
     std::vector<uint32_t> words;
-    AppendWords(slot.left, &words);
-    const std::vector<uint32_t> bridge = codes.Words(slot.bridge);
-    words.insert(words.end(), bridge.begin(), bridge.end());
-    AppendWords(slot.right, &words);
+    AppendSlotWords(slot, codes, &words);
     return words;
   }
   std::string_view form(uint32_t word) const { return form_of_(word); }
@@ -76,6 +82,8 @@ class TypeTable {
     return Text(words, between);
   }
 
+  // Before so many phrases more are interned.
+  void Reserve(size_t more) { first_by_hash_.reserve(first_by_hash_.size() + more); }
   // The id of the phrase with these words (two or more), new where there is none yet.
   uint32_t Intern(absl::Span<const uint32_t> words);
   // The same, or kBreak where there is none.

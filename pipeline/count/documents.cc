@@ -22,8 +22,6 @@ struct PartCounts {
     uint32_t documents = 0;
     uint32_t last_document = 0;
   };
-  explicit PartCounts(size_t size) : items(size) {}
-
   void See(size_t number, uint64_t at) {
     Item& item = items[number];
     if (item.last_document == document) return;
@@ -39,28 +37,35 @@ struct PartCounts {
 };
 
 // Adds the parts up in their order; a document that lies in several parts counts once.
-SlotPlaces Combine(const std::vector<PartCounts>& parts, size_t items) {
+absl::StatusOr<SlotPlaces> Combine(Lanes& lanes, const std::vector<PartCounts>& parts,
+                                   size_t items) {
   SlotPlaces places{std::vector<uint64_t>(items, 0), std::vector<uint64_t>(items, kNowhere)};
-  std::vector<bool> open(items, false);  // seen in the document that goes on
-  bool goes_on = false;
-  for (const PartCounts& part : parts) {
-    for (size_t i = 0; i < items; ++i) {
+  const auto combine = [&](size_t i) {
+    bool open = false;  // seen in the document that goes on
+    bool goes_on = false;
+    for (const PartCounts& part : parts) {
       const PartCounts::Item& item = part.items[i];
       const bool in_first = item.documents > 0 && item.first < part.first_end;
       places.documents[i] += item.documents;
-      if (goes_on && open[i] && in_first) --places.documents[i];
+      if (goes_on && open && in_first) --places.documents[i];
       if (places.first[i] == kNowhere) places.first[i] = item.first;
       const bool in_last = item.documents > 0 && item.last_document == part.document;
       if (!part.ends_inside) {
-        open[i] = false;
+        open = false;
       } else if (part.first_end == kNowhere) {
-        open[i] = (goes_on && open[i]) || in_last;
+        open = (goes_on && open) || in_last;
       } else {
-        open[i] = in_last;
+        open = in_last;
       }
+      goes_on = part.ends_inside;
     }
-    goes_on = part.ends_inside;
-  }
+  };
+  constexpr size_t kSlice = 8192;
+  PW_RETURN_IF_ERROR(lanes.ForEach((items + kSlice - 1) / kSlice, [&](int, size_t slice) {
+    const size_t end = std::min(items, (slice + 1) * kSlice);
+    for (size_t i = slice * kSlice; i < end; ++i) combine(i);
+    return absl::OkStatus();
+  }));
   return places;
 }
 
@@ -78,9 +83,10 @@ absl::StatusOr<SlotPlaces> CountInParts(Lanes& lanes, const StreamView& stream, 
   for (const auto& range : stream.Parts(lane_count * parts_a_lane)) {
     if (range.first < range.second) ranges.push_back(range);
   }
-  std::vector<PartCounts> parts(ranges.size(), PartCounts(items));
+  std::vector<PartCounts> parts(ranges.size());
   PW_RETURN_IF_ERROR(lanes.ForEach(ranges.size(), [&](int, size_t i) {
     const auto [begin, end] = ranges[i];
+    parts[i].items.resize(items);
     // Chunk by chunk, so that pages can be given back on the way.
     auto cut = std::lower_bound(stream.cuts.begin(), stream.cuts.end(), begin);
     uint64_t held = begin;
@@ -96,7 +102,7 @@ absl::StatusOr<SlotPlaces> CountInParts(Lanes& lanes, const StreamView& stream, 
     if (!parts[i].ends_inside) --parts[i].document;
     return absl::OkStatus();
   }));
-  return Combine(parts, items);
+  return Combine(lanes, parts, items);
 }
 
 void EndDocument(PartCounts* part, uint64_t at) {

@@ -6,6 +6,7 @@
 #include <unistd.h>
 
 #include <algorithm>
+#include <atomic>
 #include <cerrno>
 #include <filesystem>
 #include <system_error>
@@ -321,6 +322,11 @@ absl::StatusOr<std::string> ReadWhole(FileSystem& files, const std::string& path
   }
   whole.resize(filled);
   return whole;
+}
+
+std::string PassingPath(std::string_view prefix) {
+  static std::atomic<uint64_t> calls{0};
+  return absl::StrCat(absl::string_view(prefix.data(), prefix.size()), "-", getpid(), "-", ++calls);
 }
 
 }  // namespace phraseweld

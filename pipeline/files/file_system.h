@@ -108,6 +108,10 @@ class ForwardingFileSystem : public FileSystem {
 // Whole file in memory.
 absl::StatusOr<std::string> ReadWhole(FileSystem& files, const std::string& path);
 
+// `prefix` and two numbers: a path that nothing else that runs now, here or in another process of
+// the machine, is given. Thread-safe.
+std::string PassingPath(std::string_view prefix);
+
 }  // namespace phraseweld
 
 #endif  // PHRASEWELD_FILES_FILE_SYSTEM_H_

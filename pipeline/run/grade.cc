@@ -228,11 +228,12 @@ absl::StatusOr<GradeReport> Grade(FileSystem& files, const std::string& run,
                                   const Observer& observer) {
   PW_ASSIGN_OR_RETURN(const FinishedRun finished, LoadFinishedRun(files, run));
   PW_ASSIGN_OR_RETURN(const KnownPhrases known, ReadKnownPhrases(files, list, finished.job));
-  PW_ASSIGN_OR_RETURN(const std::unique_ptr<SourceRecount> source,
-                      SourceRecount::Read(files, finished,
-                                          options.scratch_folder.empty() ? Concat(run, ".scratch")
-                                                                         : options.scratch_folder,
-                                          observer));
+  PW_ASSIGN_OR_RETURN(
+      const std::unique_ptr<SourceRecount> source,
+      SourceRecount::Read(files, finished,
+                          options.scratch_folder.empty() ? PassingPath(Concat(run, ".scratch"))
+                                                         : options.scratch_folder,
+                          observer));
   GradeReport report;
   report.run = run;
   report.list = list;

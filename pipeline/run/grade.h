@@ -95,7 +95,7 @@ struct GradeReport {
 struct GradeOptions {
   std::vector<Quantity> measures;  // to try gates on; empty: rank_by of the first pass
   size_t most_misses = 200;
-  std::string scratch_folder;  // empty: the run folder's path and ".scratch"
+  std::string scratch_folder;  // empty: beside the run folder
 };
 
 // Where rankings are cut.

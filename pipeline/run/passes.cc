@@ -284,8 +284,12 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, const std::vector<uint3
   BeginStage("merge");
   std::vector<AcceptedSlot> accepted;
   accepted.reserve(record->accepted.size());
+  results_.types.Reserve(record->accepted.size());
+  std::vector<uint32_t> words;
   for (SlotRecord& slot : record->accepted) {
-    slot.phrase = results_.types.Intern(results_.types.SlotWords(slot.slot, results_.codes));
+    words.clear();
+    results_.types.AppendSlotWords(slot.slot, results_.codes, &words);
+    slot.phrase = results_.types.Intern(words);
     accepted.push_back({slot.slot, slot.phrase});
   }
   if (results_.types.size() >= std::min<uint64_t>(counter_->type_limit(), kMostTypes)) {
@@ -326,10 +330,12 @@ absl::Status PassLoop::MergeAccepted(PassRecord* record, const std::vector<uint3
     Adjust(slot.phrase, slot.joined, 0);
     Adjust(slot.slot.left, 0, slot.joined);
     Adjust(slot.slot.right, 0, slot.joined);
-    const std::vector<uint32_t> bridge = results_.codes.Words(slot.slot.bridge);
-    for (uint32_t word : bridge) Adjust(word, 0, slot.joined);
+    if (slot.slot.bridge != 0) {
+      for (uint32_t word : results_.codes.Words(slot.slot.bridge)) Adjust(word, 0, slot.joined);
+    }
     record->joined += slot.joined;
-    record->words_absorbed += slot.joined * (1 + bridge.size());
+    record->words_absorbed +=
+        slot.joined * static_cast<uint64_t>(1 + results_.codes.Length(slot.slot.bridge));
   }
   tokens_ -= record->words_absorbed;
   return absl::OkStatus();

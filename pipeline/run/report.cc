@@ -175,7 +175,7 @@ absl::StatusOr<WrittenReport> WriteReport(FileSystem& files, const std::string& 
   PageData page = ReportData(run);
   std::unique_ptr<RunSource> source;
   if (inputs.empty()) {
-    auto opened = RunSource::Open(files, run, Concat(folder, ".scratch"), lanes);
+    auto opened = RunSource::Open(files, run, PassingPath(Concat(folder, ".scratch")), lanes);
     if (opened.ok()) {
       source = *std::move(opened);
       inputs = source->inputs();

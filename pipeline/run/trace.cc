@@ -92,7 +92,7 @@ class Tracer {
     const PhraseTrail& trail = trails_.Find(trace_.phrase);
     trace_.made = trail.made != nullptr;
     absl::StatusOr<std::unique_ptr<RunSource>> source =
-        RunSource::Open(files_, run_, Concat(run_.data.folder, ".scratch"), lanes_);
+        RunSource::Open(files_, run_, PassingPath(run_.data.folder + ".scratch"), lanes_);
     if (source.ok()) {
       source_ = *std::move(source);
       trace_.notes = source_->notes();

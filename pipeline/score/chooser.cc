@@ -206,11 +206,21 @@ absl::StatusOr<std::optional<Choice>> Chooser::Choose(Lanes& lanes,
   }
   PW_RETURN_IF_ERROR(SortByRank(lanes, pending, &accepted));
   if (pass_.take && accepted.size() > *pass_.take) accepted.resize(*pass_.take);
-  const size_t near = std::min(near_misses.size(), kMostNearMisses);
-  std::partial_sort(near_misses.begin(), near_misses.begin() + static_cast<ptrdiff_t>(near),
-                    near_misses.end(),
-                    [&](uint32_t a, uint32_t b) { return order_(pending[a], pending[b]); });
-  near_misses.resize(near);
+  if (near_misses.size() > kMostNearMisses) {
+    // Those that tie with the last one that is wanted stay for now.
+    const auto before = [&](uint32_t a, uint32_t b) {
+      const Candidate &x = pending[a], &y = pending[b];
+      return x.score != y.score ? x.score > y.score : x.table.n > y.table.n;
+    };
+    const auto last = near_misses.begin() + kMostNearMisses - 1;
+    std::nth_element(near_misses.begin(), last, near_misses.end(), before);
+    const uint32_t bound = *last;
+    near_misses.erase(std::remove_if(near_misses.begin(), near_misses.end(),
+                                     [&](uint32_t place) { return before(bound, place); }),
+                      near_misses.end());
+  }
+  PW_RETURN_IF_ERROR(SortByRank(lanes, pending, &near_misses));
+  if (near_misses.size() > kMostNearMisses) near_misses.resize(kMostNearMisses);
   Choice choice;
   choice.accepted.reserve(accepted.size());
   for (const uint32_t place : accepted) choice.accepted.push_back(pending[place]);
