@@ -53,6 +53,8 @@ void Surfaces::Counter::Flush() {
     if (id == SharedTexts::kNone) surfaces_->full_ = true;
     return note == SharedTexts::kNoNote ? 1 : note + 1;
   });
+  // One of many megabytes is no reason to hold so many from now on.
+  if (bytes_.capacity() > 4 * kMostWaitingBytes) bytes_ = std::string();
   bytes_.clear();
   ends_.clear();
 }

@@ -91,6 +91,8 @@ class Encoder::Impl {
       }
     }
     unknown_.clear();
+    // A word of many megabytes is no reason to hold so many from now on.
+    if (bytes_.capacity() > 4 * kMostBytes) bytes_ = std::string();
     bytes_.clear();
   }
 
