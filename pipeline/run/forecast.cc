@@ -4,6 +4,7 @@
 #include <atomic>
 #include <cmath>
 #include <map>
+#include <numeric>
 #include <string>
 
 #include "base/status.h"
@@ -246,9 +247,12 @@ absl::StatusOr<std::optional<Forecast>> ForecastRun(const Job& job,
     all = Extrapolate(half, whole, whole_bytes / half_bytes, times);
     // A long way on, the last doubling of a small sample says too little of a vocabulary.
     if (times > kFarTimes && half.at("words") > 0) {
+      // Of compressed inputs the text may be many times as large as what is stored, and all of it
+      // would be taken where so much is wanted as is stored.
+      const uint64_t stored = std::accumulate(sizes.begin(), sizes.end(), uint64_t{0});
       const auto wanted = static_cast<uint64_t>(whole_sample.all_bytes / kFarTimes);
       PW_ASSIGN_OR_RETURN(const Sample words_sample,
-                          take(std::min(wanted, kMostWordSample), 1, "words"));
+                          take(std::min({wanted, kMostWordSample, stored / 2}), 1, "words"));
       PW_ASSIGN_OR_RETURN(
           const std::optional<WordCount> far,
           CountWords(job, words_sample, folder + "/words-run", files, observer.stop));
